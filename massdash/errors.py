@@ -40,4 +40,6 @@ class NotAvailable(MassdashError, LookupError):
 def refuse(name, got, allowed, *, where=None):
     """The one wording for refused input: ``mass: 'inf' is not allowed; give 100 to 1e+08 solMass``."""
     place = f"{where}: " if where else ""
-    return InputError(f"{place}{name}: {got} is not allowed; give {allowed}", name=name, got=got, allowed=allowed, where=where)
+    return InputError(
+        f"{place}{name}: {got} is not allowed; give {allowed}", name=name, got=got, allowed=allowed, where=where
+    )
