@@ -21,7 +21,7 @@ class InputError(MassdashError, ValueError):
         self.name, self.got, self.allowed, self.where = name, got, allowed, where
 
     def __reduce__(self):
-        keywords = dict(name=self.name, got=self.got, allowed=self.allowed, where=self.where)
+        keywords = {"name": self.name, "got": self.got, "allowed": self.allowed, "where": self.where}
         return _rebuild_input_error, (type(self), str(self), keywords)
 
 
@@ -38,8 +38,7 @@ class NotAvailable(MassdashError, LookupError):
 
 
 def refuse(name, got, allowed, *, where=None):
-    """The one wording for refused input: ``mass: 'inf' is not allowed; give 100 to 1e+08 solMass``."""
+    """The one wording for refused input: ``mass: inf is not allowed; give 100 to 1e8 solMass``."""
     place = f"{where}: " if where else ""
-    return InputError(
-        f"{place}{name}: {got} is not allowed; give {allowed}", name=name, got=got, allowed=allowed, where=where
-    )
+    sentence = f"{place}{name}: {got} is not allowed; give {allowed}"
+    return InputError(sentence, name=name, got=got, allowed=allowed, where=where)

@@ -1,1 +1,17 @@
+"""Figures as data: one function a figure, from an Outcome to a Chart."""
 
+from massdash.charts.energy import energy_chart
+from massdash.charts.lifetimes import lifetime_chart
+from massdash.charts.margin import margin_chart
+from massdash.charts.margin_map import margin_map
+
+#: All figures by key, in the order in which they are shown.
+CHARTS = {"energy": energy_chart, "margin": margin_chart, "map": margin_map, "lifetimes": lifetime_chart}
+
+
+def all_charts(outcome):
+    """Every figure of an Outcome, in order."""
+    return tuple(make(outcome) for make in CHARTS.values())
+
+
+__all__ = ["CHARTS", "all_charts", "energy_chart", "lifetime_chart", "margin_chart", "margin_map"]

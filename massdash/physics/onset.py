@@ -8,7 +8,7 @@ beta and Gamma_1. Both are the conditions dE/dy = d2E/dy2 = 0 of ``post_newtonia
 
 import numpy as np
 
-from massdash.constants import C, G, K_B, M_SUN, M_U, RADIATION
+from massdash.constants import K_B, M_SUN, M_U, RADIATION, C, G
 from massdash.physics import eos
 from massdash.physics.isentrope import averages
 from massdash.physics.post_newtonian import (
@@ -22,7 +22,6 @@ from massdash.physics.post_newtonian import (
     Equilibrium,
     demand,
     describe,
-    eddington_ratio,
     help_from_outside,
     pull,
     radius,
@@ -71,7 +70,7 @@ def onset_leading(body):
     )
 
 
-def _marginal_y(body, excess, start):
+def _marginal_y(body, excess):
     """y at which a given <Gamma_1> - 4/3 is just enough; plain arithmetic, so it may be solved inside another root."""
 
     def residual(u):
@@ -79,23 +78,26 @@ def _marginal_y(body, excess, start):
         support = 3.0 * excess * body.pull(y) + help_from_outside(y, body.rotation, body.background / body.density(y))
         return np.log(relativity(y, body.k5) / support)
 
+    # exact without background and second order
+    start = (1.5 * excess * (1.0 - 2.0 * body.rotation) + body.rotation) * K2 / (K4 * (1.0 - 3.0 * excess))
+    if not (np.any(body.background) or body.second_order):
+        return start
     return np.exp(secant(residual, np.log(start), what="onset of instability"))
 
 
 def onset(body):
     """The onset from the energy functional with exact beta and Gamma_1, as an Equilibrium; its margin is 0."""
-    guess = _leading_y(body)
 
     def marginal(u):
         z = np.exp(u)
         work, _, excess = averages(1.0 / (1.0 + z))
-        return z, work, _marginal_y(body, excess, guess)
+        return z, work, _marginal_y(body, excess)
 
     def residual(u):
         z, work, y = marginal(u)
         return np.log(work) + u / 3.0 + np.log1p(z) - demand(body, y)
 
-    start = np.log(eddington_ratio(body.mass, body.mu)) + 0.0 * guess
+    start = np.log(1.0 / leading_beta(body.mass, body.mu)) + 0.0 * (body.rotation + body.background)
     z, _, y = marginal(secant(residual, start, what="onset of instability"))
     return describe(body, y, 1.0 / (1.0 + z))
 
@@ -148,12 +150,11 @@ def weight_for(mass, temperature, rotation=0.0, background=0.0):
     body = Body(mass, 1.0, rotation, background)
     guess = EDDINGTON_MASS * M_SUN / mass * K2 / (4.0 * K4) * M_U * C**2 / (K_B * np.asarray(temperature, float))
     beta = leading_beta(mass, guess)
-    start_y = K2 / K4 * (rotation + beta / 4.0)
 
     def weights(u):
         z = np.exp(u)
         work, _, excess = averages(1.0 / (1.0 + z))
-        y = _marginal_y(body, excess, start_y)
+        y = _marginal_y(body, excess)
         from_pressure = 3.0 * work * K_B * temperature * (1.0 + z) / (M_U * C**2 * body.pull(y))
         from_density = body.density(y) / eos.density(temperature, 1.0 / (1.0 + z), 1.0)
         return from_pressure, from_density

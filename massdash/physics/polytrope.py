@@ -1,8 +1,8 @@
 """Lane-Emden spheres of any index 0 <= n <= 5, and the n = 3 sphere in particular.
 
-The equation is integrated from the centre outwards with w = theta^(1/2) as independent variable: xi(w) and the scaled mass
-phi(w) = -xi^2 theta' are then smooth from the centre to the surface w = 0, which is an end point and no event to be
-searched for, and theta^n = w^(2n) has bounded derivatives down to n = 1/2.
+The equation is integrated from the centre outwards with w = theta^(1/2) as independent variable: xi(w) and the scaled
+mass phi(w) = -xi^2 theta' are then smooth from the centre to the surface w = 0, which is an end point and no event to
+be searched for, and theta^n = w^(2n) has bounded derivatives down to n = 1/2.
 """
 
 from dataclasses import dataclass
@@ -84,7 +84,7 @@ def _surface(n):
 def profile(n, theta):
     """xi and -xi^2 theta' where the sphere of one index ``n`` (a number, 0 to below 5) has the given theta values.
 
-    ``theta`` (k,) decreases from at most 0.999 to at least 0. Good to 1e-12; for the nodes of a quadrature, not for speed.
+    ``theta`` (k,) decreases from at most 0.999 to at least 0. Good to 1e-12; meant for nodes of a quadrature.
     """
     if not 0 <= n < 5:
         raise ValueError(f"index n: {n} is not allowed; give 0 to below 5")

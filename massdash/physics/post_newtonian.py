@@ -17,7 +17,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from massdash.constants import C, G, K_B, M_SUN, M_U, RADIATION
+from massdash.constants import K_B, M_SUN, M_U, RADIATION, C, G
 from massdash.physics import eos
 from massdash.physics.isentrope import averages
 from massdash.physics.polytrope import standard_model

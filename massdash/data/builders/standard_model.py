@@ -1,7 +1,7 @@
 """Writes data/standard_model.csv: the n = 3 sphere's constants and quadrature nodes for averages over its mass.
 
 Run ``python -m massdash.data.builders.standard_model`` after a change here or in physics/polytrope.py. With
-theta = (1 - t^2)^2 the sphere is smooth in t from centre (0) to surface (1), so Gauss-Legendre nodes in t converge fast.
+theta = (1 - t^2)^2 the sphere is smooth in t from centre (0) to surface (1): Gauss-Legendre nodes in t converge fast.
 """
 
 from pathlib import Path
@@ -14,7 +14,7 @@ NODES = 32
 
 
 def nodes(count):
-    """xi and theta (count,) from centre to surface and the weights (count,) that turn an average over mass into a sum."""
+    """xi and theta (count,) from centre to surface, and the weights (count,) of an average over mass."""
     t, gauss = (np.polynomial.legendre.leggauss(count)[k] for k in (0, 1))
     t, gauss = (t + 1) / 2, gauss / 2
     w = 1 - t**2

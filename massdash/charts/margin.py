@@ -1,0 +1,59 @@
+"""The stability margin against mass, at the scenario's ignition temperature and composition."""
+
+from functools import lru_cache
+
+import numpy as np
+
+from massdash.charts.chart import Axis, Chart, Line, Point, Rule, Span
+from massdash.charts.masses import family, mass_limits
+from massdash.model import words
+from massdash.numerals import numeral
+from massdash.physics.post_newtonian import equilibrium_at_temperature
+
+POINTS = 161
+LOWEST = -1.0  # the axis ends here; a star below it is drawn on the edge with its value beside it
+
+
+def margin_chart(outcome):
+    """The Chart of the margin against rest mass; zero is the onset of collapse, below it no star of this kind ignites."""
+    ignition = outcome.workings.stability.ignition
+    masses, margin = _curve(family(outcome), ignition)
+    mass = Axis("Mass", "solMass", "log", mass_limits(outcome))
+    axis = Axis("Stability margin", "", "linear", (LOWEST, 1.0))
+    marks = [Span("unstable", "collapses before it ignites", "y", None, 0.0)]
+    if masses.size:
+        marks.append(Line("margin", f"at {numeral(ignition, 2)} K", masses, margin, 0))
+    largest = outcome.number("maximum_mass")
+    if largest is not None and mass.limits[0] <= largest <= mass.limits[1]:
+        marks.append(Rule("maximum_mass", f"largest mass {numeral(largest)}", "x", largest, 6))
+    value = outcome.number("stability_margin")
+    if value is not None:
+        text = (
+            outcome.scenario.label
+            if value >= LOWEST
+            else f"{outcome.scenario.label}: {numeral(value, 2)}, off the axis"
+        )
+        marks.append(Point("star", text, outcome.scenario.number("mass"), max(value, LOWEST), "present"))
+    sources = tuple(words.energy_source(outcome.scenario).split("; "))
+    notes = (f"{words.EXACT}.",)
+    return Chart("margin", "Stability margin", mass, axis, tuple(marks), _alt(outcome, value, largest), notes, sources)
+
+
+@lru_cache(maxsize=32)
+def _curve(family, ignition):
+    """Masses [Msun] and margins; NaN below the axis."""
+    masses = family.masses(POINTS, ignition)
+    if not masses.size:
+        return masses, masses
+    margin = np.asarray(equilibrium_at_temperature(family.bodies(masses), ignition).margin)
+    return masses, np.where(margin >= LOWEST, margin, np.nan)
+
+
+def _alt(outcome, value, largest):
+    if value is None:
+        return f"Stability margin against mass: {words.NOT_COVERED}."
+    limit = f"; it vanishes at {numeral(largest)} Msun" if largest is not None else ""
+    return (
+        f"Stability margin against mass for ignition at {numeral(outcome.workings.stability.ignition)} K: "
+        f"{numeral(value, 2)} for {outcome.scenario.label}{limit}."
+    )

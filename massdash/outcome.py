@@ -1,0 +1,99 @@
+"""What ``evaluate`` returns: every quantity with its unit, method, source and spread, the fate, and the verdict."""
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from types import MappingProxyType
+
+from massdash.errors import NotAvailable
+from massdash.quantities import QUANTITIES
+
+#: Verdicts on the birth of the star.
+BIRTHS = ("single_star", "cluster", "unclear", "not_asked")
+
+#: Fates of the star.
+FATES = (
+    "fragments",
+    "core_collapse",
+    "pulsational_pair_instability",
+    "pair_instability_supernova",
+    "pair_collapse",
+    "helium_explosion",
+    "collapse_in_helium_burning",
+    "collapse_in_hydrogen_burning",
+    "collapse_before_ignition",
+    "thermonuclear_explosion",
+    "mass_shedding",
+    "undecided",
+)
+
+
+@dataclass(frozen=True)
+class Entry:
+    """One quantity: ``value`` in ``unit``, or None with a ``note`` that says why; ``low`` and ``high`` bound a spread.
+
+    ``method`` says how it was computed and where that holds, ``source`` names the paper behind the method.
+    """
+
+    value: float | None
+    unit: str
+    method: str = ""
+    source: str = ""
+    note: str = ""
+    low: float | None = None
+    high: float | None = None
+
+
+@dataclass(frozen=True, eq=False)
+class Outcome:
+    """The answer for one scenario. ``outcome[name]`` is an astropy Quantity; ``entries`` holds all that is known.
+
+    ``headline`` is the verdict in words, ``birth`` and ``fate`` are one of ``BIRTHS`` and ``FATES``, ``warnings`` are
+    sentences about where the methods stop holding. ``workings`` are the stages' own results, for charts.
+    """
+
+    scenario: object
+    entries: Mapping[str, Entry]
+    birth: str
+    fate: str
+    headline: str
+    warnings: tuple[str, ...] = field(default_factory=tuple)
+    workings: object = None
+
+    def __post_init__(self):
+        object.__setattr__(self, "entries", MappingProxyType({name: self.entries[name] for name in QUANTITIES}))
+
+    def __getitem__(self, name):
+        """The quantity as an astropy Quantity; KeyError for an unknown name, NotAvailable when it has no value."""
+        from astropy import units as u
+
+        entry = self.entries[name]
+        if entry.value is None:
+            raise NotAvailable(f"{name} has no value here: {entry.note}")
+        return u.Quantity(entry.value, u.Unit(entry.unit))
+
+    def number(self, name):
+        """The value in the quantity's own unit, or None."""
+        return self.entries[name].value
+
+    def table(self):
+        """All quantities as a QTable: quantity, value (masked where there is none), low, high, unit, method, source, note."""
+        import numpy as np
+        from astropy.table import MaskedColumn, QTable
+
+        def column(attribute):
+            values = [getattr(entry, attribute) for entry in self.entries.values()]
+            missing = [value is None for value in values]
+            return MaskedColumn(
+                np.array([0.0 if gone else v for v, gone in zip(values, missing, strict=True)]), mask=missing
+            )
+
+        texts = {
+            name: [getattr(e, name) for e in self.entries.values()] for name in ("unit", "method", "source", "note")
+        }
+        table = QTable({"quantity": list(self.entries)})
+        for name in ("value", "low", "high"):
+            table[name] = column(name)
+        for name, values in texts.items():
+            table[name] = values
+        table.meta.update(scenario=self.scenario.label, birth=self.birth, fate=self.fate, warnings=list(self.warnings))
+        return table
