@@ -18,9 +18,14 @@ def builtin_names():
 
 def builtin(name):
     """The built-in scenario of this name. Raises InputError for any other name."""
+    return from_bytes(builtin_path(name).read_bytes(), where=f"{name}.yaml")
+
+
+def builtin_path(name):
+    """The file of a built-in scenario. Raises InputError for any other name."""
     if name not in builtin_names():
         raise refuse("built-in scenario", shown(name), f"one of {', '.join(builtin_names())}")
-    return from_bytes((_folder() / f"{name}.yaml").read_bytes(), where=f"{name}.yaml")
+    return _folder() / f"{name}.yaml"
 
 
 def _folder():
