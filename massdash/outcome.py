@@ -76,24 +76,18 @@ class Outcome:
         return self.entries[name].value
 
     def table(self):
-        """All quantities as a QTable: quantity, value (masked where there is none), low, high, unit, method, source, note."""
+        """All quantities as a QTable of quantity, value, low, high, unit, method, source and note, gaps masked."""
         import numpy as np
         from astropy.table import MaskedColumn, QTable
 
-        def column(attribute):
-            values = [getattr(entry, attribute) for entry in self.entries.values()]
-            missing = [value is None for value in values]
-            return MaskedColumn(
-                np.array([0.0 if gone else v for v, gone in zip(values, missing, strict=True)]), mask=missing
-            )
-
-        texts = {
-            name: [getattr(e, name) for e in self.entries.values()] for name in ("unit", "method", "source", "note")
-        }
+        entries = list(self.entries.values())
         table = QTable({"quantity": list(self.entries)})
         for name in ("value", "low", "high"):
-            table[name] = column(name)
-        for name, values in texts.items():
-            table[name] = values
+            values = [getattr(entry, name) for entry in entries]
+            missing = [value is None for value in values]
+            filled = np.array([0.0 if value is None else value for value in values])
+            table[name] = MaskedColumn(filled, mask=missing)
+        for name in ("unit", "method", "source", "note"):
+            table[name] = [getattr(entry, name) for entry in entries]
         table.meta.update(scenario=self.scenario.label, birth=self.birth, fate=self.fate, warnings=list(self.warnings))
         return table

@@ -81,7 +81,8 @@ def _alt(outcome, star, onset, barrier):
     scenario = outcome.scenario
     where = "in the minimum of its own curve" if barrier else "at the onset of collapse, where no barrier is left"
     return (
-        f"Energy against central density for {numeral(scenario.number('mass'))} Msun: {scenario.label} lies {where}, at "
-        f"{numeral(float(star.density))} g/cm3 and {numeral(float(star.energy))} erg; the equilibria have their lowest "
-        f"energy, {numeral(float(onset.energy))} erg, at {numeral(float(onset.density))} g/cm3, where collapse sets in."
+        f"Energy against central density for {numeral(scenario.number('mass'))} Msun: {scenario.label} lies {where}, "
+        f"at {numeral(float(star.density))} g/cm3 and {numeral(float(star.energy))} erg; the equilibria have their "
+        f"lowest energy, {numeral(float(onset.energy))} erg, at {numeral(float(onset.density))} g/cm3, where collapse "
+        "sets in."
     )

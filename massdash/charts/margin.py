@@ -15,7 +15,7 @@ LOWEST = -1.0  # the axis ends here; a star below it is drawn on the edge with i
 
 
 def margin_chart(outcome):
-    """The Chart of the margin against rest mass; zero is the onset of collapse, below it no star of this kind ignites."""
+    """The Chart of the margin against rest mass; zero is the onset of collapse, no star below it ignites."""
     ignition = outcome.workings.stability.ignition
     masses, margin = _curve(family(outcome), ignition)
     mass = Axis("Mass", "solMass", "log", mass_limits(outcome))

@@ -44,8 +44,9 @@ def _alt(outcome, ignition):
     largest = outcome.number("maximum_mass")
     limit = f", where the largest mass that ignites is {numeral(largest)} Msun" if largest is not None else ""
     return (
-        "Map of the stability margin over mass and ignition temperature; it falls towards heavy stars and hot ignition. "
-        f"{outcome.scenario.label} is at {numeral(outcome.scenario.number('mass'))} Msun and {numeral(ignition)} K{limit}."
+        "Map of the stability margin over mass and ignition temperature; it falls towards heavy stars and hot "
+        f"ignition. {outcome.scenario.label} is at {numeral(outcome.scenario.number('mass'))} Msun and "
+        f"{numeral(ignition)} K{limit}."
     )
 
 
