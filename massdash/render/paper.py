@@ -1,0 +1,182 @@
+"""Charts on paper: any Chart as a matplotlib figure of exact width. matplotlib starts here, and only on export.
+
+The axes of the figure run from 0 to 1 on both sides (see paper_scale); tick labels carry the chart's own values.
+"""
+
+from __future__ import annotations
+
+from contextlib import contextmanager
+
+import numpy as np
+from matplotlib import style
+from matplotlib.backends.backend_agg import FigureCanvasAgg
+from matplotlib.figure import Figure
+from matplotlib.transforms import Affine2D
+
+from massdash.charts.chart import Map
+from massdash.errors import refuse
+from massdash.render import paper_layout, paper_marks, paper_scale
+from massdash.render.paper_check import check_chart
+from massdash.render.paper_layout import BAR, EDGE, GAP, TICK
+from massdash.render.paper_marks import INK
+from massdash.render.paper_names import Names
+from massdash.render.paper_text import FAMILY, LINE_HEIGHT, Ruler, printable_chart
+
+MM = 72 / 25.4  # points
+WIDTH_LIMITS = (40.0, 400.0)  # mm
+HEIGHT_LIMITS = (20.0, 600.0)  # mm
+FONT_LIMITS = (5.0, 24.0)  # points
+DPI = 300
+LOOK = {
+    "font.family": FAMILY,
+    "mathtext.fontset": "dejavusans",
+    "text.hinting": "none",  # letters as wide on the measuring canvas as in the PDF
+    "pdf.fonttype": 42,  # whole TrueType outlines: embedded, searchable, editable
+    "svg.fonttype": "path",  # looks the same on machines without the font
+    "svg.hashsalt": "massdash",  # equal identifiers in every run
+    "lines.scale_dashes": False,
+    "hatch.linewidth": 0.4,
+    "axes.linewidth": 0.6,
+}
+
+
+@contextmanager
+def look():
+    """matplotlib's own defaults and ours, whatever the user's settings, and those back again afterwards."""
+    with style.context(["default", LOOK]):
+        yield
+
+
+def figure(chart, *, width_mm=88, height_mm=None, font_size=8, title=True):
+    """Draw a chart as a matplotlib Figure exactly ``width_mm`` wide.
+
+    ``height_mm`` None takes what the contents need; ``font_size`` (points) is that of axis titles, tick labels have 0.9
+    and notes 0.8 of it; ``title=False`` leaves the title to the caption. Labels that find no free place go to a key
+    below the axes. Raises InputError for sizes out of range and charts that cannot be drawn.
+    """
+    check_size("width_mm", width_mm, WIDTH_LIMITS, "mm")
+    check_size("font_size", font_size, FONT_LIMITS, "points")
+    if height_mm is not None:
+        check_size("height_mm", height_mm, HEIGHT_LIMITS, "mm")
+    check_chart(chart)
+    chart = printable_chart(chart)
+    height = None if height_mm is None else height_mm * MM
+    keyed = frozenset()
+    with look():
+        while True:  # ends, because the key only grows and holds no homeless label
+            sheet = Sheet(chart, width_mm * MM, height, font_size, keyed, title)
+            homeless = sheet.draw()
+            if not homeless - keyed:
+                return sheet.figure
+            keyed |= homeless
+
+
+def check_size(name, value, limits, unit):
+    """Refuse a length that is no number or out of range."""
+    is_number = isinstance(value, int | float | np.number) and not isinstance(value, bool)
+    if not (is_number and limits[0] <= value <= limits[1]):
+        raise refuse(name, repr(value), f"{limits[0]:g} to {limits[1]:g} {unit}")
+
+
+class Sheet:
+    """One page being drawn; positions are points from its lower left corner."""
+
+    def __init__(self, chart, width, height, font_size, keyed, title):
+        self.chart = chart
+        self.scales = {which: paper_scale.of_chart(chart, which) for which in ("x", "y")}
+        self.figure = Figure(figsize=(width / 72, 1), dpi=DPI)
+        FigureCanvasAgg(self.figure)
+        self.ruler = Ruler(self.figure, font_size)
+        self.layout = paper_layout.plan(chart, self.scales, self.ruler, width, height, keyed=keyed, title=title)
+        self.figure.set_size_inches(width / 72, self.layout.height / 72)
+        self.points = Affine2D().scale(1 / 72) + self.figure.dpi_scale_trans
+        self.keyed = keyed
+
+    def draw(self):
+        """Draw everything; returns the keys of marks whose labels found no place."""
+        axes = self._axes(self.layout.left, self.layout.axes_width)
+        for mark in self._drawable():
+            paper_marks.draw(mark, axes, self.scales)
+        self._axis_texts(axes)
+        if self.layout.bar is not None:
+            self._colour_bar()
+        self._title_and_notes()
+        self._key()
+        return Names(self).place()
+
+    def _drawable(self):
+        """Marks with a place on the page: points and rules outside the axes stay away (a note says so)."""
+        return [mark for mark in self.chart.marks if paper_marks.is_on(mark, self.scales)]
+
+    def text(self, x, y, text, size, **look):
+        """A text at (x, y) points."""
+        look = {"color": INK, "linespacing": LINE_HEIGHT, **look}
+        return self.figure.text(x, y, text, fontsize=size, transform=self.points, **look)
+
+    def _axes(self, left, width):
+        page = self.layout
+        place = [left / page.width, page.bottom / page.height, width / page.width, page.axes_height / page.height]
+        axes = self.figure.add_axes(place)
+        axes.set(xlim=(0, 1), ylim=(0, 1))
+        axes.tick_params(direction="in", length=TICK, width=0.6, color=INK, labelsize=self.ruler.small, labelcolor=INK)
+        axes.tick_params(which="minor", length=0.6 * TICK, width=0.4)
+        axes.set_axisbelow(False)
+        return axes
+
+    def _axis_texts(self, axes):
+        page, size = self.layout, self.ruler.font_size
+        self._ticks(axes.xaxis, page.x, top=True)
+        self._ticks(axes.yaxis, page.y, right=page.bar is None)
+        middle = page.left + page.axes_width / 2
+        self.text(middle, page.bottom - page.x.depth, page.x.title, size, ha="center", va="bottom", ma="center")
+        upright = {"rotation": 90, "ha": "left", "va": "center", "ma": "center"}
+        self.text(page.left - page.y.depth, page.bottom + page.axes_height / 2, page.y.title, size, **upright)
+
+    def _ticks(self, axis, side, **opposite):
+        ticks = side.ticks
+        axis.set_ticks(ticks.at, ticks.texts)
+        axis.set_ticks(ticks.minor, minor=True)
+        axis.set_tick_params(which="both", pad=TICK, **opposite)
+        for label in axis.get_ticklabels():
+            label.set(rotation=ticks.rotation, ma="center", linespacing=LINE_HEIGHT)
+            if axis.axis_name == "y":
+                label.set_verticalalignment("center")
+        if axis.axis_name == "x" and not ticks.rotation and not any("\n" in text for text in ticks.texts):
+            self._one_baseline(axis, side)
+
+    def _one_baseline(self, axis, side):
+        """Powers and plain numbers stand on one line."""
+        axis.set_tick_params(pad=TICK + side.label_depth - 0.25 * self.ruler.small)
+        for label in axis.get_ticklabels():
+            label.set_verticalalignment("baseline")
+
+    def _colour_bar(self):
+        page = self.layout
+        mark = self.chart.of(Map)[0]
+        scale = paper_marks.map_scale(mark)
+        left = page.left + page.axes_width + GAP
+        axes = self._axes(left, BAR)
+        paper_marks.colour_bar(axes, mark, scale)
+        axes.xaxis.set_ticks([])
+        axes.yaxis.tick_right()
+        self._ticks(axes.yaxis, page.bar)
+        upright = {"rotation": 90, "ha": "right", "va": "center", "ma": "center"}
+        middle = page.bottom + page.axes_height / 2
+        self.text(left + BAR + page.bar.depth, middle, page.bar.title, self.ruler.font_size, **upright)
+
+    def _title_and_notes(self):
+        page = self.layout
+        size = self.ruler.font_size
+        self.text(EDGE, page.height - EDGE, page.title, size, weight="bold", ha="left", va="top")
+        self.text(EDGE, EDGE, page.notes, self.ruler.tiny, ha="left", va="bottom")
+
+    def _key(self):
+        page = self.layout
+        top = page.bottom - page.x.depth - GAP
+        for item in page.key:
+            middle = EDGE + item.left, top - item.top - item.height / 2
+            height = 0.7 * self.ruler.small
+            for artist in paper_marks.sample(item.mark, middle[0], middle[1] - height / 2, item.width, height):
+                artist.set_transform(self.points)
+                self.figure.add_artist(artist)
+            self.text(middle[0] + item.width + 4, middle[1], item.text, self.ruler.small, ha="left", va="center")

@@ -1,0 +1,59 @@
+"""What must hold before a chart is drawn or tabulated: one clear sentence instead of a failure deep in a library."""
+
+from __future__ import annotations
+
+import re
+
+import numpy as np
+
+from massdash.charts.chart import Band, Line, Map, Point, Rule, Span
+from massdash.errors import refuse
+from massdash.render import palette
+
+POINT_KINDS = ("present", "stable", "unstable", "onset", "end")
+PALETTES = ("sequential", "diverging")
+KEY = re.compile(r"[A-Za-z0-9][A-Za-z0-9_.-]{0,99}")
+CURVES = {Line: ("x", "y"), Band: ("x", "low", "high")}
+
+
+def check_chart(chart):
+    """Refuse, naming chart and mark, what no renderer could draw."""
+    if not KEY.fullmatch(str(chart.key)):
+        raise refuse("chart key", repr(chart.key), "letters, digits, '_', '-' and '.', because it becomes a file name")
+    for mark in chart.marks:
+        _check_mark(mark, f"chart {chart.key}, mark {getattr(mark, 'key', '?')}")
+    if len(chart.of(Map)) > 1:
+        raise refuse(f"chart {chart.key}", f"{len(chart.of(Map))} maps", "at most one, for there is one colour bar")
+
+
+def _check_mark(mark, name):
+    if not isinstance(mark, Line | Band | Span | Rule | Point | Map):
+        raise refuse(name, f"a {type(mark).__name__}", "a Line, Band, Span, Rule, Point or Map")
+    if isinstance(mark, Line | Band):
+        _check_curve(mark, name)
+    if isinstance(mark, Line | Band | Rule) and mark.style not in range(len(palette.STYLES)):
+        raise refuse(f"{name}, style", mark.style, f"0 to {len(palette.STYLES) - 1}")
+    if isinstance(mark, Span | Rule) and mark.axis not in ("x", "y"):
+        raise refuse(f"{name}, axis", repr(mark.axis), "'x' or 'y'")
+    if isinstance(mark, Point) and mark.kind not in POINT_KINDS:
+        raise refuse(f"{name}, kind", repr(mark.kind), ", ".join(POINT_KINDS))
+    if isinstance(mark, Map):
+        _check_map(mark, name)
+
+
+def _check_curve(mark, name):
+    shapes = [np.shape(getattr(mark, column)) for column in CURVES[type(mark)]]
+    if len(set(shapes)) != 1 or len(shapes[0]) != 1:
+        listed = ", ".join(f"{c} {s}" for c, s in zip(CURVES[type(mark)], shapes, strict=True))
+        raise refuse(f"{name}, shapes", listed, "lists of one dimension and equal length")
+
+
+def _check_map(mark, name):
+    if len(np.shape(mark.values)) != 2 or np.size(mark.values) == 0:
+        raise refuse(f"{name}, shape of values", np.shape(mark.values), "a table of rows (y) and columns (x)")
+    if mark.palette not in PALETTES:
+        raise refuse(f"{name}, palette", repr(mark.palette), " or ".join(PALETTES))
+    for which in ("x", "y"):
+        low, high = getattr(mark, which)
+        if not (np.isfinite([low, high]).all() and low != high):
+            raise refuse(f"{name}, edges in {which}", (low, high), "two different finite numbers")
