@@ -7,25 +7,20 @@ from __future__ import annotations
 
 from contextlib import contextmanager
 
-import numpy as np
 from matplotlib import style
 from matplotlib.backends.backend_agg import FigureCanvasAgg
 from matplotlib.figure import Figure
 from matplotlib.transforms import Affine2D
 
 from massdash.charts.chart import Map
-from massdash.errors import refuse
 from massdash.render import paper_layout, paper_marks, paper_scale
-from massdash.render.paper_check import check_chart
+from massdash.render.paper_check import check_chart, check_sizes
 from massdash.render.paper_layout import BAR, EDGE, GAP, TICK
 from massdash.render.paper_marks import INK
 from massdash.render.paper_names import Names
 from massdash.render.paper_text import FAMILY, LINE_HEIGHT, Ruler, printable_chart
 
 MM = 72 / 25.4  # points
-WIDTH_LIMITS = (40.0, 400.0)  # mm
-HEIGHT_LIMITS = (20.0, 600.0)  # mm
-FONT_LIMITS = (5.0, 24.0)  # points
 DPI = 300
 LOOK = {
     "font.family": FAMILY,
@@ -54,10 +49,7 @@ def figure(chart, *, width_mm=88, height_mm=None, font_size=8, title=True):
     and notes 0.8 of it; ``title=False`` leaves the title to the caption. Labels that find no free place go to a key
     below the axes. Raises InputError for sizes out of range and charts that cannot be drawn.
     """
-    check_size("width_mm", width_mm, WIDTH_LIMITS, "mm")
-    check_size("font_size", font_size, FONT_LIMITS, "points")
-    if height_mm is not None:
-        check_size("height_mm", height_mm, HEIGHT_LIMITS, "mm")
+    check_sizes(width_mm, font_size, height_mm)
     check_chart(chart)
     chart = printable_chart(chart)
     height = None if height_mm is None else height_mm * MM
@@ -69,13 +61,6 @@ def figure(chart, *, width_mm=88, height_mm=None, font_size=8, title=True):
             if not homeless - keyed:
                 return sheet.figure
             keyed |= homeless
-
-
-def check_size(name, value, limits, unit):
-    """Refuse a length that is no number or out of range."""
-    is_number = isinstance(value, int | float | np.number) and not isinstance(value, bool)
-    if not (is_number and limits[0] <= value <= limits[1]):
-        raise refuse(name, repr(value), f"{limits[0]:g} to {limits[1]:g} {unit}")
 
 
 class Sheet:

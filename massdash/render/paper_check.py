@@ -10,10 +10,28 @@ from massdash.charts.chart import Band, Line, Map, Point, Rule, Span
 from massdash.errors import refuse
 from massdash.render import palette
 
+WIDTHS = {"single": 88, "double": 180}  # mm: one and two columns of a journal page; common practice, no source
+WIDTH_LIMITS = (40.0, 400.0)  # mm
+HEIGHT_LIMITS = (20.0, 600.0)  # mm
+FONT_LIMITS = (5.0, 24.0)  # points
 POINT_KINDS = ("present", "stable", "unstable", "onset", "end")
 PALETTES = ("sequential", "diverging")
 KEY = re.compile(r"[A-Za-z0-9][A-Za-z0-9_.-]{0,99}")
 CURVES = {Line: ("x", "y"), Band: ("x", "low", "high")}
+
+
+def check_sizes(width_mm, font_size, height_mm=None):
+    """Refuse sizes that are no numbers or out of range."""
+    _check_size("width_mm", width_mm, WIDTH_LIMITS, "mm")
+    _check_size("font_size", font_size, FONT_LIMITS, "points")
+    if height_mm is not None:
+        _check_size("height_mm", height_mm, HEIGHT_LIMITS, "mm")
+
+
+def _check_size(name, value, limits, unit):
+    is_number = isinstance(value, int | float | np.number) and not isinstance(value, bool)
+    if not (is_number and limits[0] <= value <= limits[1]):
+        raise refuse(name, repr(value), f"{limits[0]:g} to {limits[1]:g} {unit}")
 
 
 def check_chart(chart):

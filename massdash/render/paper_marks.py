@@ -128,13 +128,12 @@ def _(mark: Map, ax, scales):
 
 
 def image(ax, positions, edges, table):
-    """Cells coloured by their position 0..1 in a colour table, kept as pixels in every format."""
+    """Cells coloured by their position 0..1 in a colour table: one picture in every format, not thousands of shapes."""
     known = np.isfinite(positions)
     pixels = np.zeros((*positions.shape, 4), np.uint8)  # transparent where there is no value
     pixels[known, :3] = palette.colour_table(table)[np.rint(255 * positions[known]).astype(int)]
     pixels[known, 3] = 255
-    drawn = ax.imshow(pixels, extent=edges, origin="lower", aspect="auto", interpolation="nearest", zorder=0.5)
-    drawn.set_rasterized(True)
+    ax.imshow(pixels, extent=edges, origin="lower", aspect="auto", interpolation="nearest", zorder=0.5)
     ax.set(xlim=(0, 1), ylim=(0, 1))
 
 

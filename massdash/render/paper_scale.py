@@ -274,11 +274,21 @@ def plain(text):
     return " ".join(str(text).split()).replace("$", r"\$")
 
 
+def unit_text(unit):
+    """A unit as printed: "g / cm3" as g cm⁻³, "solMass" as M☉; what is no unit of astropy stays as it is."""
+    from astropy import units as u
+
+    try:
+        return u.Unit(unit).to_string("unicode")
+    except ValueError:
+        return unit
+
+
 def axis_title(axis: Axis, ticks: Ticks):
     """Label, offset, and in brackets the power of ten, the unit and the linear width."""
     label = plain(axis.label) + (f" {ticks.offset}" if ticks.offset else "")
     power = rf"$10^{{{ticks.power}}}$" if ticks.power else ""
-    inside = " ".join(part for part in (power, plain(axis.unit)) if part)
+    inside = " ".join(part for part in (power, plain(unit_text(axis.unit))) if part)
     if axis.scale == "symlog":
         inside = "; ".join(part for part in (inside, f"linear within ±{number_text(axis.linear_width)}") if part)
     return f"{label} ({inside})" if inside else label
