@@ -4,7 +4,7 @@ import textwrap
 import unicodedata
 from itertools import groupby
 
-from massdash.provenance import provenance
+from massdash.provenance import method_line, numbered_methods, provenance
 from massdash.quantities import QUANTITIES, STAGES
 
 _ESCAPES = {
@@ -19,18 +19,23 @@ _ACCENTS = {
 }  # fmt: skip
 _LETTERS = {"ß": r"\ss{}", "æ": r"\ae{}", "Æ": r"\AE{}", "ø": r"\o{}", "Ø": r"\O{}", "ł": r"\l{}", "Ł": r"\L{}"}
 _LETTERS |= {"œ": r"\oe{}", "Œ": r"\OE{}", "ı": r"\i{}"}
+_END = r"\tabularnewline"  # a plain \\ would end a line within a ragged cell, not the row
 _BOTTOM = [r"\hline", r"\end{tabular}", r"\par}\bigskip"]
 
 
 def as_latex(outcome):
-    r"""Tables to ``\input`` in a paper: quantity, value with its spread, unit, and method, or why there is no value.
+    r"""Tables to ``\input`` in a paper: quantity, value with its spread, unit, number of the method, and a note; below
+    them the methods with their sources.
 
-    Versions, scenario, verdict, warnings and sources stand above them as comments.
+    Versions, scenario, verdict and warnings stand above the tables as comments.
     """
+    methods = numbered_methods(outcome)
     lines = _comments(outcome)
     for stage, names in groupby(outcome.entries, key=lambda name: QUANTITIES[name].stage):
-        lines += ["", *_top(STAGES[stage]), *(_row(name, outcome.entries[name]) for name in names), *_BOTTOM]
-    return "\n".join(lines) + "\n"
+        rows = (_row(name, outcome.entries[name], methods) for name in names)
+        lines += ["", *_top(STAGES[stage]), *rows, *_BOTTOM]
+    listed = (f"[{index}]~{escape(method_line(pair))}." for pair, index in methods.items())
+    return "\n".join([*lines, "", r"{\noindent\scriptsize\raggedright Methods and sources:", *listed, r"\par}"]) + "\n"
 
 
 def escape(text):
@@ -88,24 +93,37 @@ def _comments(outcome):
     lines = [f"{about['program']}, constants {about['constants']}, data {about['data']}"]
     lines += [f"{name}: {value}" for name, value in about["scenario"].items()]
     lines += [f"birth: {outcome.birth}", f"fate: {outcome.fate}", outcome.headline, *outcome.warnings]
-    lines += [f"source: {source}" for source in about["sources"]]
     return [f"% {part}" for line in lines for part in textwrap.wrap(line, 100)]
 
 
 def _top(title):
-    columns = r"\begin{tabular}{@{}lp{0.2\linewidth}lp{0.3\linewidth}@{}}"
-    heads = " & ".join([escape(title), "Value", "Unit", "Method"])
+    heads = " & ".join([escape(title), "Value", "Unit", "Method", "Note"])
     small = r"{\noindent\scriptsize\setlength{\tabcolsep}{3pt}\raggedright"
-    return [small, columns, r"\hline", rf"{heads} \\", r"\hline"]
+    return [
+        small,
+        r"\begin{tabular}{@{}lp{0.18\linewidth}lcp{0.22\linewidth}@{}}",
+        r"\hline",
+        rf"{heads} {_END}",
+        r"\hline",
+    ]
 
 
-def _row(name, entry):
-    method = "; ".join(filter(None, [entry.method if entry.value is not None else "", entry.note]))
-    return f"{escape(name)} & {_value(entry)} & {unit(entry.unit)} & {escape(method)} \\\\"
+def _row(name, entry, methods):
+    index = methods.get((entry.method, entry.source), "") if entry.value is not None else ""
+    method = f"[{index}]" if index else ""
+    cells = [escape(name), _ragged(_value(entry)), unit(entry.unit), method, _ragged(escape(entry.note))]
+    return " & ".join(cells) + rf" {_END}"
+
+
+def _ragged(text):
+    """A cell of several lines without stretched spaces."""
+    return rf"\raggedright {text}" if text else ""
 
 
 def _value(entry):
     if entry.value is None:
         return r"$\ldots$"
-    spread = [f"{word} {number(end)}" for word, end in (("from", entry.low), ("to", entry.high)) if end is not None]
-    return " ".join([number(entry.value), *spread])
+    if entry.low is None and entry.high is None:
+        return number(entry.value)
+    low, high = (number(entry.value if end is None else end) for end in (entry.low, entry.high))
+    return f"{number(entry.value)} ({low} to~{high})"

@@ -6,11 +6,11 @@ import textwrap
 from itertools import groupby
 
 from massdash.errors import ComputationError
-from massdash.provenance import provenance
+from massdash.provenance import method_line, numbered_methods, provenance
 from massdash.quantities import QUANTITIES, STAGES
 
 SCHEMA = 1
-_NAME = 30  # columns for names of quantities; longer ones push their value to the right
+_NAME = 27  # columns for names of quantities; longer ones push their value to the right
 _INDENT = "  "
 
 
@@ -21,14 +21,14 @@ def as_text(outcome, *, width=100):
     copied into other programs.
     """
     about = provenance(outcome)
-    methods = _numbered_methods(outcome)
+    methods = numbered_methods(outcome)
     parts = [_wrapped(outcome.headline, width)]
     parts += [_wrapped(f"Warning: {sentence}", width, rest=_INDENT) for sentence in outcome.warnings]
     parts += ["", f"birth: {outcome.birth}", f"fate: {outcome.fate}"]
     for stage, names in groupby(outcome.entries, key=lambda name: QUANTITIES[name].stage):
         parts += ["", STAGES[stage], *_stage({name: outcome.entries[name] for name in names}, methods, width)]
     parts += ["", "Methods and sources"]
-    parts += [_item(f"[{index}] {'; '.join(filter(None, method))}", width) for method, index in methods.items()]
+    parts += [_item(f"[{index}] {method_line(pair)}", width) for pair, index in methods.items()]
     parts += ["", _wrapped(f"{about['program']}, constants {about['constants']}", width)]
     return "\n".join(parts) + "\n"
 
@@ -70,12 +70,6 @@ def _plain(entry):
 
 def _float(value):
     return None if value is None else float(value)
-
-
-def _numbered_methods(outcome):
-    """Each pair of method and source in use, with its number."""
-    used = ((entry.method, entry.source) for entry in outcome.entries.values() if entry.value is not None)
-    return {pair: index for index, pair in enumerate(dict.fromkeys(used), start=1)}
 
 
 def _stage(entries, methods, width):
