@@ -82,15 +82,14 @@ def _evaluate(options):
 
 def _figures(options):
     from massdash.charts import all_charts
-    from massdash.render.export import export_figures, provenance
-    from massdash.render.paper import WIDTHS
+    from massdash.render.export import WIDTHS, export_figures, provenance
 
-    width = _width(options.width, WIDTHS)
+    wishes = {"formats": tuple(dict.fromkeys(options.format or ["pdf"])), "width_mm": _width(options.width, WIDTHS)}
+    export_figures((), options.output, **wishes, provenance={})  # bad wishes are refused before anything is computed
     outcome = _outcome(options.file)
     charts = all_charts(outcome)
     _say(f"drawing {len(charts)} figures")
-    formats = tuple(dict.fromkeys(options.format or ["pdf"]))
-    for path in export_figures(charts, options.output, formats=formats, width_mm=width, provenance=provenance(outcome)):
+    for path in export_figures(charts, options.output, **wishes, provenance=provenance(outcome)):
         print(path)
     return 0
 
