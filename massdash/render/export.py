@@ -35,6 +35,13 @@ def figure_bytes(chart, format, *, width_mm=88, height_mm=None, font_size=8, tit
     from massdash.render import paper
 
     drawn = paper.figure(chart, width_mm=width_mm, height_mm=height_mm, font_size=font_size, title=title)
+    return _printed(drawn, chart, format, provenance)
+
+
+def _printed(drawn, chart, format, provenance):
+    """A drawn chart as the bytes of one format."""
+    from massdash.render import paper
+
     buffer = BytesIO()
     with paper.look():
         dpi = PNG_DPI if format == "png" else PICTURE_DPI
@@ -58,15 +65,16 @@ def export_figures(charts, directory, *, formats=("pdf",), width_mm=88, font_siz
 
     Nothing is written when anything is refused: all files are made first.
     """
+    from massdash.render import paper, tables
+
     directory, charts, formats = Path(directory), tuple(charts), tuple(formats)
     _check_request(charts, directory, formats, width_mm, font_size)
     files = {}
     for chart in charts:
-        for format in formats:
-            look = {"width_mm": width_mm, "font_size": font_size}
-            files[f"{chart.key}.{format}"] = figure_bytes(chart, format, **look, provenance=provenance)
+        drawn = paper.figure(chart, width_mm=width_mm, font_size=font_size)
+        files |= {f"{chart.key}.{format}": _printed(drawn, chart, format, provenance) for format in formats}
         if with_data:
-            files[f"{chart.key}.ecsv"] = _table_bytes(chart, provenance)
+            files[f"{chart.key}.ecsv"] = tables.ecsv_bytes(chart, provenance)
     return [write_file(directory / name, content) for name, content in files.items()]
 
 
@@ -105,12 +113,6 @@ def _check_directory(directory):
         raise refuse("directory", f"'{directory}'", "a directory that exists")
     if not os.access(directory, os.W_OK | os.X_OK):
         raise refuse("directory", f"'{directory}', which is write-protected,", "a directory you may write to")
-
-
-def _table_bytes(chart, provenance):
-    from massdash.render.tables import ecsv_bytes
-
-    return ecsv_bytes(chart, provenance)
 
 
 def _metadata(chart, format, provenance):

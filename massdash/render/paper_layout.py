@@ -79,7 +79,7 @@ def plan(chart, scales, ruler, width, height, *, keyed, title):
     key = key_items([m for m in chart.marks if m.key in keyed], ruler, inner)
     column = _column(chart, scales, ruler, width, keyed)
     stacked = _height(ruler.size(notes, ruler.tiny)) + _height((0, max((i.top + i.height for i in key), default=0)))
-    above = EDGE + (_height(ruler.size(heading, ruler.font_size, "bold")) or 0.5 * ruler.small)
+    above = EDGE + _height(ruler.size(heading, ruler.font_size, "bold")) + 0.5 * ruler.small
     axes_width, axes_height = 0.7 * width, 0.7 * (height or width)
     for _ in range(5):  # tick labels depend on the axes' size and the other way round; this settles in two or three
         x = _side(chart.x, scales["x"], ruler, axes_width, horizontal=True)

@@ -15,7 +15,8 @@ from massdash.render import palette, paper_scale
 PRINT = 0.75  # widths and dashes are chosen for the screen; print is finer
 INK = "#1a1a1a"
 REACH = 4.5  # points from a marker's centre to what must keep off
-HATCH = {"facecolor": (0, 0, 0, 0.06), "edgecolor": (0, 0, 0, 0.28), "hatch": "////", "linewidth": 0}
+SHADE = {"facecolor": "black", "alpha": 0.06, "linewidth": 0}
+HATCH = {"facecolor": "none", "edgecolor": "#a0a0a0", "hatch": "///", "linewidth": 0}
 _FILLED = {"color": INK, "markeredgecolor": "white", "markeredgewidth": 0.6}
 _OPEN = {"color": "white", "markeredgecolor": INK, "markeredgewidth": 0.9}
 MARKERS = {  # layers from the bottom up
@@ -87,7 +88,14 @@ def _(mark: Band, ax, scales):
 @draw.register
 def _(mark: Span, ax, scales):
     left, bottom, right, top = span_box(mark, scales)
-    ax.add_patch(Rectangle((left, bottom), right - left, top - bottom, zorder=1.2, **HATCH))
+    for patch in hatched(left, bottom, right - left, top - bottom):
+        patch.set_zorder(1.2)
+        ax.add_patch(patch)
+
+
+def hatched(left, bottom, width, height):
+    """A shade and lines over it, apart: as one patch their transparency and their lines spoil each other in PDF."""
+    return [Rectangle((left, bottom), width, height, **look) for look in (SHADE, HATCH)]
 
 
 def span_box(mark, scales):
@@ -119,7 +127,9 @@ def _(mark: Map, ax, scales):
     edges = [*scales["x"].fraction(mark.x), *scales["y"].fraction(mark.y)]
     colours = colour_positions(mark, map_scale(mark), mark.values)
     if np.isnan(colours).any():
-        ax.add_patch(Rectangle((edges[0], edges[2]), edges[1] - edges[0], edges[3] - edges[2], zorder=0.4, **HATCH))
+        for patch in hatched(edges[0], edges[2], edges[1] - edges[0], edges[3] - edges[2]):
+            patch.set_zorder(0.4)
+            ax.add_patch(patch)
     image(ax, colours, edges, mark.palette)
     for level, lines in contours(mark, scales):
         for line in lines:
@@ -198,7 +208,7 @@ def _(mark: Band, left, bottom, width, height):
 
 @sample.register
 def _(mark: Span, left, bottom, width, height):
-    return [Rectangle((left, bottom), width, height, **HATCH)]
+    return hatched(left, bottom, width, height)
 
 
 @sample.register
