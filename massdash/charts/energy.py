@@ -8,7 +8,10 @@ from massdash.numerals import numeral
 from massdash.physics.post_newtonian import energy_terms, equilibrium_at_density
 
 POINTS = 240
-_BELOW, _ABOVE = 1e-3, 40.0  # the density axis reaches this far below the star and above the onset
+# The density axis reaches from _BELOW times the star's to _ABOVE times the onset's or _BEYOND times the barrier's.
+_BELOW, _ABOVE, _BEYOND = 1e-2, 12.0, 3.0
+_LARGEST_Y = 0.3  # post-Newtonian terms mean nothing beyond
+_DEEPEST = -1.8  # lower end of the energy axis, in units of the onset's binding energy; own curves fall on without end
 _TERMS = {
     "internal": "internal energy",
     "newtonian": "Newtonian gravity",
@@ -36,14 +39,15 @@ def energy_chart(outcome, *, terms=False):
             notes=(words.NOT_COVERED,),
         )
     body = outcome.workings.matter.body
-    span = (_BELOW * min(star.density, onset.density), _ABOVE * onset.density)
-    rho = np.geomspace(*span, POINTS)
+    barrier = _barrier(body, star) if star is not onset else None
+    highest = max(_ABOVE * onset.density, _BEYOND * barrier[0] if barrier else 0.0)
+    rho = np.geomspace(_BELOW * star.density, highest, POINTS)
     parts = energy_terms(body, star, rho)
     locus = equilibrium_at_density(body, rho).energy
     own = parts["total"]
-    barrier = _barrier(rho, own, star)
-    reach = max(np.max(np.abs(locus)), abs(float(onset.energy)), barrier[1] if barrier else 0.0)
-    energy = Axis("Energy", "erg", "symlog", (-1.3 * reach, 1.3 * reach), linear_width=1e-2 * reach)
+    depth = abs(float(onset.energy))
+    top = max(0.6 * depth, 1.6 * barrier[1] if barrier else 0.0)
+    energy = Axis("Energy", "erg", "symlog", (_DEEPEST * depth, top), linear_width=depth)
     marks = [
         Line("locus", "equilibria", rho, locus, 0),
         Line("own", "at its entropy", rho, own, 1),
@@ -52,8 +56,8 @@ def energy_chart(outcome, *, terms=False):
     ]
     if terms:
         marks += _term_lines(rho, parts)
-        largest = max(np.max(np.abs(values)) for name, values in parts.items() if name != "total")
-        energy = Axis("Energy", "erg", "symlog", (-1.3 * largest, 1.3 * largest), linear_width=1e-2 * reach)
+        largest = max(np.max(np.abs(values)) for values in parts.values())
+        energy = Axis("Energy", "erg", "symlog", (-1.5 * largest, 1.5 * largest), linear_width=depth)
     if barrier:
         marks.append(Point("barrier", "barrier", *barrier, "unstable"))
     marks.append(Point("star", outcome.scenario.label, float(star.density), float(star.energy), "present"))
@@ -63,10 +67,19 @@ def energy_chart(outcome, *, terms=False):
     return Chart("energy", "Binding energy", density, energy, tuple(marks), alt, notes, sources)
 
 
-def _barrier(rho, own, star):
-    """Density and energy of the maximum beyond the star's own minimum; None when there is none in the range."""
-    inner = np.flatnonzero((own[1:-1] > own[:-2]) & (own[1:-1] >= own[2:]) & (rho[1:-1] > star.density)) + 1
-    return (float(rho[inner[0]]), float(own[inner[0]])) if inner.size else None
+def _barrier(body, star):
+    """Density and energy of the maximum beyond the star's own minimum; None when there is none."""
+    highest = body.density(_LARGEST_Y)
+    if not star.density < highest:
+        return None
+    rho = np.geomspace(star.density, highest, POINTS)
+    own = energy_terms(body, star, rho)["total"]
+    inner = np.flatnonzero((own[1:-1] > own[:-2]) & (own[1:-1] >= own[2:])) + 1
+    if not inner.size:
+        return None
+    left, top, right = own[inner[0] + np.array([-1, 0, 1])]
+    shift = 0.5 * (left - right) / (left - 2.0 * top + right)  # vertex of the parabola through the three points
+    return float(rho[inner[0]] * (rho[1] / rho[0]) ** shift), float(top - 0.25 * (left - right) * shift)
 
 
 def _term_lines(rho, parts):
@@ -79,7 +92,8 @@ def _term_lines(rho, parts):
 
 def _alt(outcome, star, onset, barrier):
     scenario = outcome.scenario
-    where = "in the minimum of its own curve" if barrier else "at the onset of collapse, where no barrier is left"
+    settled = star is not onset
+    where = "in the minimum of its own curve" if settled else "at the onset of collapse, where no barrier is left"
     return (
         f"Energy against central density for {numeral(scenario.number('mass'))} Msun: {scenario.label} lies {where}, "
         f"at {numeral(float(star.density))} g/cm3 and {numeral(float(star.energy))} erg; the equilibria have their "

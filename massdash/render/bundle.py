@@ -31,6 +31,7 @@ CHARTS = (
     "widget.js",
 )
 FIELD = ("numbers.js", "field.js")
+DOWNLOAD = ("download.js",)
 
 
 def _join(names):
@@ -55,6 +56,12 @@ def charts_module():
 def field_module():
     """The module of the number field, as text."""
     return _join(FIELD)
+
+
+@cache
+def download_module():
+    """The module that hands over files, as text."""
+    return _join(DOWNLOAD)
 
 
 @cache

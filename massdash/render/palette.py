@@ -154,7 +154,7 @@ def colour_table(name):
     if name == "sequential":
         table = _between(SEQUENTIAL, 256)
     elif name == "diverging":
-        table = np.concatenate([_between(COOL_HALF, 128), _between(WARM_HALF, 128)])
+        table = np.concatenate([_between(WARM_HALF[::-1], 128), _between(COOL_HALF[::-1], 128)])
     else:
         raise ValueError(f"colour table {name!r} is neither 'sequential' nor 'diverging'")
     table.flags.writeable = False
