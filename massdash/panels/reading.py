@@ -39,19 +39,14 @@ def status(sentence, *, error=False):
 def table(outcome):
     """All quantities by stage with value, unit, method and source; those without a value say why."""
     head = "".join(f'<th scope="col">{title}</th>' for title in ("Quantity", "Value", "Unit", "Method", "Source"))
-    bodies = [
-        f'<tbody><tr><th scope="rowgroup" colspan="5">{STAGES[stage]}</th></tr>{"".join(map(_row, names, _entries(outcome, names)))}</tbody>'
-        for stage, names in _by_stage(outcome)
-    ]
-    return f'<table class="massdash-table"><thead><tr>{head}</tr></thead>{"".join(bodies)}</table>'
+    grouped = groupby(outcome.entries.items(), key=lambda item: QUANTITIES[item[0]].stage)
+    bodies = "".join(_stage(STAGES[stage], items) for stage, items in grouped)
+    return f'<table class="massdash-table"><thead><tr>{head}</tr></thead>{bodies}</table>'
 
 
-def _by_stage(outcome):
-    return [(stage, list(names)) for stage, names in groupby(outcome.entries, key=lambda name: QUANTITIES[name].stage)]
-
-
-def _entries(outcome, names):
-    return [outcome.entries[name] for name in names]
+def _stage(title, items):
+    rows = "".join(_row(name, entry) for name, entry in items)
+    return f'<tbody><tr><th scope="rowgroup" colspan="5">{title}</th></tr>{rows}</tbody>'
 
 
 def _row(name, entry):
@@ -65,7 +60,6 @@ def _row(name, entry):
 
 
 def _value(entry):
-    spread = [
-        f"{word} {numeral(bound, 4)}" for word, bound in (("low", entry.low), ("high", entry.high)) if bound is not None
-    ]
-    return numeral(entry.value, 5) + (f" <small>({', '.join(spread)})</small>" if spread else "")
+    bounds = (("low", entry.low), ("high", entry.high))
+    spread = ", ".join(f"{word} {numeral(bound, 4)}" for word, bound in bounds if bound is not None)
+    return numeral(entry.value, 5) + (f" <small>({spread})</small>" if spread else "")
