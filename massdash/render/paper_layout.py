@@ -17,6 +17,7 @@ from massdash.render import paper_marks, paper_scale
 from massdash.render.paper_scale import Ticks, axis_title, number_text, plain
 
 EDGE = 2.0  # free rim of the page
+SLACK = 0.97  # for letters that another renderer draws a little wider
 GAP = 3.0
 TICK = 3.0
 BAR = 8.0  # width of a colour bar
@@ -73,7 +74,7 @@ class Layout:
 
 def plan(chart, scales, ruler, width, height, *, keyed, title):
     """Lay out a page of ``width`` and ``height`` (None: as needed); the labels of marks ``keyed`` go to the key."""
-    inner = width - 2 * EDGE
+    inner = SLACK * (width - 2 * EDGE)
     heading = ruler.wrap(plain(chart.title), inner, ruler.font_size, "bold") if title else ""
     notes = "\n".join(ruler.wrap(plain(note), inner, ruler.tiny) for note in (*chart.notes, *remarks(chart, scales)))
     key = key_items([m for m in chart.marks if m.key in keyed], ruler, inner)
@@ -84,7 +85,7 @@ def plan(chart, scales, ruler, width, height, *, keyed, title):
     for _ in range(5):  # tick labels depend on the axes' size and the other way round; this settles in two or three
         x = _side(chart.x, scales["x"], ruler, axes_width, horizontal=True)
         y = _side(chart.y, scales["y"], ruler, axes_height, horizontal=False, cap=0.3 * width)
-        bar = _bar(chart, ruler, axes_height)
+        bar = _bar(chart, ruler, axes_height, cap=0.2 * width)
         left = max(EDGE + y.depth, EDGE + _overhang(x, ruler, axes_width)[0])
         right = _right(column, bar, _overhang(x, ruler, axes_width)[1])
         bottom = EDGE + stacked + x.depth
@@ -180,20 +181,31 @@ def _wrapped_title(axis, ticks, ruler, length):
     return "\n".join(ruler.wrap(part, length, ruler.font_size) for part in (label, (bracket + inside).strip()) if part)
 
 
-def _bar(chart, ruler, length):
+def _bar(chart, ruler, length, cap):
     maps = chart.of(Map)
-    return _side(maps[0].axis, paper_marks.map_scale(maps[0]), ruler, length, horizontal=False) if maps else None
+    if not maps:
+        return None
+    return _side(maps[0].axis, paper_marks.map_scale(maps[0]), ruler, length, horizontal=False, cap=cap)
 
 
 def _chosen(axis, scale, ruler, length, horizontal, cap):
     """The densest tick set whose labels stand apart; named ticks are wrapped, and turned when even that is too wide."""
     options = list(paper_scale.candidates(axis, scale))
     if axis.ticks is not None:
-        slot = 0.9 * length / max(len(options[0].at), 1) if horizontal else cap
-        wrapped = tuple(ruler.wrap(text, slot, ruler.small) for text in options[0].texts)
-        options = [replace(options[0], texts=wrapped), *([replace(options[0], rotation=90)] if horizontal else [])]
+        options = _wrapped_ticks(
+            options[0], ruler, 0.9 * length / max(len(axis.ticks), 1) if horizontal else cap, horizontal
+        )
     fitting = (t for t in options if (len(t.at) > 1 or axis.ticks) and _apart(t, ruler, length, horizontal))
     return next(fitting, options[-1] if options else Ticks((), ()))
+
+
+def _wrapped_ticks(ticks, ruler, width, horizontal):
+    """Named ticks in lines of this width; horizontal ones rather upright than with broken words."""
+    wrapped = replace(ticks, texts=tuple(ruler.wrap(text, width, ruler.small) for text in ticks.texts))
+    if not horizontal:
+        return [wrapped]
+    upright = replace(ticks, rotation=90)
+    return [wrapped, upright] if all(ruler.fits(text, width, ruler.small) for text in ticks.texts) else [upright]
 
 
 def _apart(ticks, ruler, length, horizontal):

@@ -73,7 +73,10 @@ def forward(kind, linear_width, values):
     if kind == "log":
         return np.log10(np.where(values > 0, values, np.nan))
     if kind == "symlog":
-        return np.arcsinh(values / (2 * linear_width)) / np.log(10)
+        with np.errstate(over="ignore"):
+            ratio = values / (2 * linear_width)
+        far = np.sign(values) * (np.log10(np.maximum(np.abs(values), linear_width)) - np.log10(linear_width))
+        return np.where(np.isinf(ratio), far, np.arcsinh(ratio) / np.log(10))
     return values
 
 
