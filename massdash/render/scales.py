@@ -11,8 +11,7 @@ from ..charts.chart import Band, Line, Map, Point, Rule
 
 MARGIN = 0.04  # of the data's range, left free on both sides
 LEAST = 1e-12  # narrowest axis, relative to its larger end: float64 resolves no finer steps
-# Double precision ends at 1.8e308 and is exact to all digits down to 2.2e-308.
-ENDS = {"linear": (-1e300, 1e300), "log": (-307.0, 308.0), "symlog": (-307.0, 308.0)}
+LARGEST, SMALLEST = 9e307, 2e-307  # double precision ends at 1.8e308 and has all its digits down to 2.2e-308
 
 
 def forward(values, axis):
@@ -35,16 +34,16 @@ def extent(coordinates):
     return (float(finite.min()), float(finite.max())) if finite.size else None
 
 
-def widen(low, high, scale):
-    """The range with a margin; a single value gets room on both sides."""
+def widen(low, high, axis):
+    """The range with a margin, as far as double precision goes; a single value gets room on both sides."""
     if high - low > LEAST * max(abs(low), abs(high)):
         room = MARGIN * (high - low)
-    elif scale == "linear":
+    elif axis.scale == "linear":
         room = 0.05 * max(abs(low), abs(high)) or 1.0
     else:
         room = 0.5
-    least, most = ENDS[scale]
-    return max(low - room, least), min(high + room, most)
+    least, most = forward([SMALLEST if axis.scale == "log" else -LARGEST, LARGEST], axis)
+    return max(low - room, float(least)), min(high + room, float(most))
 
 
 def _values_along(mark, name):
@@ -82,7 +81,7 @@ def home(chart, name):
     low, high = min(pair[0] for pair in found), max(pair[1] for pair in found)
     if chart.of(Map) and high > low:
         return (low, high)  # a map fills its frame
-    return widen(low, high, axis.scale)
+    return widen(low, high, axis)
 
 
 def map_range(mark):

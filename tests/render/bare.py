@@ -6,6 +6,8 @@ import json
 from massdash.render import bundle
 from massdash.render.frame import frame, structure
 
+HANG = 15_000  # milliseconds after which a page counts as hung
+
 PAGE = """<!doctype html><html><head><meta charset="utf-8"><style>{css}
 body {{ margin: 8px; background: {paper}; color: {ink}; }}</style></head><body><div id="host"></div></body></html>"""
 
@@ -58,18 +60,17 @@ def _open(page, css, dark):
 
 
 def open_charts(page, charts, *, columns=2, height=300, dark=False, exact=False):
-    """Draws charts in an empty page and waits for the first paint."""
+    """Draws charts in an empty page and waits for the first paint, at most 15 s: a hung page fails here."""
     _open(page, bundle.stylesheet("charts"), dark)
     page.evaluate(
-        """async ([source, structure, frame, columns, height]) => {
-            const painted = new Promise((done) => addEventListener("massdash:painted", function once() {
-                if (document.querySelector(".massdash-charts").page.views.every((view) => view.picture)) done();
-            }));
-            await start(source, { structure, frame: withBuffer(JSON.parse(frame)), columns, height });
-            await painted;
+        """([source, structure, frame, columns, height]) => {
+            const state = { structure, frame: withBuffer(JSON.parse(frame)), columns, height };
+            setTimeout(() => start(source, state));
         }""",
         [bundle.charts_module(), structure(charts), message(charts, exact=exact), columns, height],
     )
+    page.wait_for_selector("[data-frame='1']", timeout=HANG)
+    page.evaluate("window.views = document.querySelector('.massdash-charts').page.views; undefined")
 
 
 def show(page, charts, **options):

@@ -1,7 +1,7 @@
 /* One chart: its elements in the page, its scales and marks of the moment, and when it is painted. */
 
-const HOW_TO = "Hover to read values. Drag a box to zoom; wheel zooms while the chart has focus or with Ctrl; double click, 0 or "
-  + "Escape resets. Keys: arrows move the read-out, + and − zoom, Enter clicks, Shift and arrows move a handle, H picks the next.";
+const HOW_TO = "Hover to read values. Drag a box to zoom; the wheel zooms while the chart has focus or with Ctrl; "
+  + "double click, 0 or Escape resets. Keys: arrows move the read-out, + and − zoom, Enter clicks, Shift and arrows move a handle, H picks the next.";
 const MOST_PIXELS = 16e6;
 
 function element(tag, className, parent, attributes = {}) {
@@ -103,11 +103,13 @@ class ChartView {
     return context;
   }
 
+  /** Whether anything was painted: a hidden chart, or one without room yet, is not. */
   paint(height) {
-    if (!(this.width > 60)) return; // hidden, or no room yet
+    if (!(this.width > 60)) return false;
     this.picture = paintChart(this, this.sizeCanvas(height), this.width, height);
     this.fillLegend(this.picture.legend);
     this.input.refresh();
+    return true;
   }
 
   /** Texts that found no place in the plot, in one line under the title; it keeps its height once it was needed. */

@@ -28,7 +28,7 @@ const endsRight = (end) => end !== null && end[0] > 0.93;
 
 function endLabels(marks, scales) {
   const labelled = marks.filter((mark) => mark.kind === "line" && mark.label);
-  return labelled.map((mark) => ({ mark, end: lastVisible(mark, scales) })).filter((label) => label.end);
+  return labelled.map((mark) => ({ mark, end: lastVisible(mark, scales) }));
 }
 
 function rightMargin(view, width, labels, barTicks) {

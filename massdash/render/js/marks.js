@@ -74,6 +74,8 @@ function drawRule(picture, mark) {
   if (along) context.moveTo(place, edges[1]), context.lineTo(place, edges[3]);
   else context.moveTo(edges[0], place), context.lineTo(edges[2], place);
   picture.stroke(line, 1.3, dash);
+  if (along) picture.texts.crowd.segment(place, edges[1], place, edges[3]);
+  else picture.texts.crowd.segment(edges[0], place, edges[2], place);
   if (mark.handle) drawGrip(picture, along, place, line);
   const places = along ? besideRule(picture, place) : aboveRule(picture, place);
   picture.later.push(() => picture.label(mark.label, places, ink, { dash }));
@@ -175,7 +177,10 @@ function labelEnds(picture) {
     if (Math.abs(end.at - end.y) > 4) strokeLines(picture, [[right + 1, end.y, right + 8, end.at]], line, 1);
     picture.texts.write(end.mark.label, picture.texts.box(end.mark.label, right + 10, end.at), ink, picture.theme.paper);
   });
-  picture.labels.filter((label) => !fitting(label)).forEach((label) => labelInside(picture, label));
+  for (const label of picture.labels) {
+    if (!label.end) listAbsent(picture, label);
+    else if (!fitting(label)) labelInside(picture, label);
+  }
 }
 
 /** Gives each label a height ``at``, in the order of the line ends, at least a text's height apart. */
@@ -186,6 +191,13 @@ function pushApart(ends, least, most) {
     ends[i].at = Math.min(ends[i].at, i < ends.length - 1 ? ends[i + 1].at - TEXT_HEIGHT : most);
   }
   return ends;
+}
+
+/** A line without a point in the view is still named, so that nobody misses it. */
+function listAbsent(picture, { mark }) {
+  const { ink, dash } = picture.style(mark.style);
+  const empty = !mark.x.some((t, i) => Number.isFinite(t + mark.y[i]));
+  picture.legend.push({ text: `${mark.label} (${empty ? "no values" : "outside the view"})`, colour: ink, dash });
 }
 
 /** A line that ends inside the plot, or whose label is too long for the margin, is named where it runs. */

@@ -84,11 +84,14 @@ function paintAxisTexts(picture) {
   uprightText(picture, scales.y.title(), AXIS_TITLE / 2 + 1);
 }
 
-/** Text turned upwards beside the plot, at a distance from the left edge of the cell. */
+/** Text turned upwards beside the plot, at a distance from the left edge of the cell; smaller when the cell is low. */
 function uprightText({ context, box }, text, x) {
+  const room = box.top + box.height + MARGIN_BOTTOM, fitted = Math.min(1, (room - 8) / textWidth(text));
+  const half = (textWidth(text) * fitted) / 2 + 4;
   context.save();
-  context.translate(x, box.top + box.height / 2);
+  context.translate(x, Math.max(half, Math.min(room - half, box.top + box.height / 2)));
   context.rotate(-Math.PI / 2);
+  context.scale(fitted, fitted);
   context.textAlign = "center";
   context.fillText(text, 0, 0);
   context.restore();

@@ -10,8 +10,6 @@ const SCALES = {
   }),
 };
 
-/** Doubles end at 1.8e308; an axis that reaches further would have ticks at infinity. */
-const FARTHEST = { linear: 1e300, log: 307, symlog: 300 };
 const NARROWEST = 1e-12;
 
 class Scale {
@@ -29,9 +27,11 @@ class Scale {
     this.home = this.acceptable(...home) ? home : [0, 1];
   }
 
+  /** Whether doubles hold and resolve a range; an axis that reached further would have ticks at infinity. */
   acceptable(start, end) {
-    const far = Math.max(Math.abs(start), Math.abs(end));
-    return far <= FARTHEST[this.scale] + 1 && Math.abs(end - start) > NARROWEST * far;
+    const far = Math.max(Math.abs(start), Math.abs(end)), values = [this.inverse(start), this.inverse(end)];
+    const held = values.every((value) => Math.abs(value) < 1e308) && (this.scale !== "log" || values.every((v) => v > 1e-307));
+    return held && Math.abs(end - start) > NARROWEST * far;
   }
 
   get start() { return (this.view || this.home)[0]; }

@@ -1,6 +1,7 @@
 /* Ticks: values, their texts, and what the axis title must add. Every loop here ends after a stated number of steps. */
 
 const MOST_TICKS = 200;
+const MOST_DECADES = 700;
 const DECADE_STEPS = [1, 2, 3, 5, 10, 15, 20, 25, 30, 50, 100, 200];
 
 const decadeStep = (span, count) => DECADE_STEPS.find((step) => span / step <= Math.max(count, 2) + 0.5) || 400;
@@ -55,8 +56,9 @@ function logTicks(low, high, count) {
   if (span < 0.7) return linearTicks(10 ** low, 10 ** high, count);
   const step = decadeStep(span, count);
   const ticks = [];
-  const last = Math.min(Math.ceil(high), Math.floor(low) + 700);
-  for (let k = Math.floor(low); k <= last; k++) {
+  const first = Math.floor(low), decades = Math.min(MOST_DECADES, Math.ceil(high) - first);
+  for (let i = 0; i <= decades; i++) {
+    const k = first + i;
     if (k % step === 0) ticks.push({ value: powerOfTen(k), text: powerText(k) });
     else if (step <= 10) ticks.push({ value: powerOfTen(k), text: "" });
     if (step === 1 && span < 12) ticks.push(...withinDecade(k, span));
@@ -71,12 +73,13 @@ function symlogTicks(scale, count) {
   const narrow = low * high > 0 && high - low < 0.7;
   if (largest < 3 * scale.width || narrow) return linearTicks(scale.inverse(low), scale.inverse(high), count);
   const top = exponentOf(largest);
-  const bottom = Math.max(Math.ceil(Math.log10(scale.width) - 1e-9), top - 700);
+  const decades = Math.min(MOST_DECADES, top - Math.ceil(Math.log10(scale.width) - 1e-9));
   const step = decadeStep(high - low, count);
   const ticks = [{ value: 0, text: "0" }];
-  for (let k = top; k >= bottom; k--) {
+  for (let i = 0; i <= decades; i++) {
+    const k = top - i;
     const clearOfZero = scale.forward(powerOfTen(k)) > 0.6 * step;
-    const text = (top - k) % step === 0 && clearOfZero ? powerText(k) : "";
+    const text = i % step === 0 && clearOfZero ? powerText(k) : "";
     ticks.push({ value: powerOfTen(k), text }, { value: -powerOfTen(k), text: text && "−" + text });
   }
   return { ticks, note: {} };

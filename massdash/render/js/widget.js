@@ -4,7 +4,7 @@ const DROP_WAIT = 1000;
 
 class Page {
   constructor(model, host) {
-    Object.assign(this, { model, host, views: [], queued: false, drawn: -1, sent: 0, fresh: true, theme: readTheme(host) });
+    Object.assign(this, { model, host, views: [], queued: false, taken: -1, sent: 0, fresh: true, theme: readTheme(host) });
     this.root = element("div", "massdash-charts", host);
     this.root.page = this; // for tests and the console
     this.ended = new AbortController();
@@ -46,9 +46,14 @@ class Page {
     if (this.fresh) this.takeFrame();
     if (!this.theme || !this.themeSure) this.restyle();
     this.root.style.setProperty("--massdash-columns", this.model.get("columns") || 2);
-    for (const view of this.views) view.paint(this.height);
-    this.root.dataset.frame = this.drawn;
-    this.root.dispatchEvent(new CustomEvent("massdash:painted", { bubbles: true, detail: { frame: this.drawn } }));
+    const painted = this.views.map((view) => view.paint(this.height));
+    if (painted.includes(true)) this.announce();
+  }
+
+  /** The number of the frame now on the canvas, for those who wait for it; nothing is said while all is hidden. */
+  announce() {
+    this.root.dataset.frame = this.taken;
+    this.root.dispatchEvent(new CustomEvent("massdash:painted", { bubbles: true, detail: { frame: this.taken } }));
   }
 
   /** Reads colours from the page; before the widget is in it, only a guess is possible. */
@@ -58,18 +63,18 @@ class Page {
     this.root.classList.toggle("massdash-dark", this.theme.dark);
   }
 
-  /** The newest frame, unless a newer one was drawn or its structure is still on the way. */
+  /** The newest frame, unless a newer one was taken or its structure is still on the way. */
   takeFrame() {
     this.fresh = false;
     const structure = this.model.get("structure"), frame = this.model.get("frame");
-    if (!(frame.number > this.drawn) || !fits(structure, frame)) return;
+    if (!(frame.number > this.taken) || !fits(structure, frame)) return;
     if (structure !== this.structure) this.build(structure);
     const columns = readColumns(frame);
     this.views.forEach((view, i) => {
       if (view.dropped && frame.answers >= view.dropped) this.letGo(view);
       view.setMoment(frame.charts[i], columns);
     });
-    this.drawn = frame.number;
+    this.taken = frame.number;
   }
 
   /** Keeps the charts that stay, with their zoom and focus. */

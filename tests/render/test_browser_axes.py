@@ -1,0 +1,187 @@
+"""The sixteen hard charts in a real browser: ranges, ticks, labels, gaps and pixels."""
+
+import re
+
+import numpy as np
+import pytest
+from bare import HANG, open_charts, show
+from hard_cases import hard_cases
+
+pytestmark = pytest.mark.browser
+CASES = hard_cases()
+SUPERSCRIPTS = str.maketrans("⁻⁰¹²³⁴⁵⁶⁷⁸⁹", "-0123456789")
+
+# All a test wants to know of a painted chart. A label's box is [left, right] along its axis in pixels.
+FACTS = """() => views.map((view) => {
+    const { picture, scales } = view, dense = view.canvas.width / view.width;
+    const pixels = view.canvas.getContext("2d").getImageData(0, 0, view.canvas.width, view.canvas.height).data;
+    const inked = (x, y) => {
+        let most = 0;
+        for (let dx = -2; dx <= 2; dx++) for (let dy = -2; dy <= 2; dy++) {
+            const at = 4 * (Math.round((y + dy) * dense) * view.canvas.width + Math.round((x + dx) * dense));
+            const [r, g, b, a] = pixels.slice(at, at + 4);
+            if (a > 100) most = Math.max(most, b - r); // the first style is blue, everything else here is grey
+        }
+        return most > 60;
+    };
+    const axis = (scale, ticks, length, size) => ({
+        home: scale.home, note: scale.note, title: scale.title(),
+        ticks: ticks.map((tick) => ({ ...tick, half: size(tick.text) / 2, pixel: tick.at * length })),
+    });
+    const line = view.marks.find((mark) => mark.kind === "line" && mark.style === 0);
+    const points = line ? Array.from(line.x, (t, i) => [picture.X(scales.x.fraction(t)), picture.Y(scales.y.fraction(line.y[i]))]) : [];
+    return {
+        x: axis(scales.x, picture.xTicks, picture.box.width, textWidth_), y: axis(scales.y, picture.yTicks, picture.box.height, () => 12),
+        points: points.map(([x, y]) => Number.isFinite(x + y) ? { x, y, inked: inked(x, y) } : null),
+        column: points.map(([x]) => Array.from({ length: 60 }, (_, k) => inked(x, picture.box.top + 2 + k * (picture.box.height - 4) / 59)).some(Boolean)),
+        written: picture.texts.written, legend: view.legend.textContent, canvas: [view.width, view.canvas.clientHeight],
+        label: view.plot.getAttribute("aria-label"),
+    };
+})"""
+
+
+@pytest.fixture(scope="module")
+def facts(chromium):
+    page = chromium.new_page(viewport={"width": 1100, "height": 900})
+    open_charts(page, list(CASES.values()), height=220)
+    page.evaluate("""() => {
+        const ruler = document.createElement("canvas").getContext("2d");
+        ruler.font = "12px 'DejaVu Sans', 'Segoe UI', system-ui, sans-serif";
+        window.textWidth_ = (text) => ruler.measureText(text).width;
+    }""")
+    found = dict(zip(CASES, page.evaluate(FACTS), strict=True))
+    page.close()
+    return found
+
+
+each_case = pytest.mark.parametrize("key", CASES)
+
+
+def labels(axis):
+    return [tick for tick in axis["ticks"] if tick["text"]]
+
+
+def value_of(text, note):
+    """The number a label means together with what the axis title says."""
+    sign, mantissa, power = re.fullmatch(r"(−?)(?:([\d.]+)(?:×|$))?(?:10([⁻⁰¹²³⁴⁵⁶⁷⁸⁹]+))?", text).groups()
+    value = float(mantissa or 1) * 10.0 ** int((power or "⁰").translate(SUPERSCRIPTS))
+    return note.get("offset", 0) + (-value if sign else value) * 10.0 ** note.get("exponent", 0)
+
+
+@each_case
+def test_ranges_are_finite_and_not_empty(facts, key):
+    for name in "xy":
+        low, high = facts[key][name]["home"]
+        assert np.isfinite([low, high]).all()
+        assert low < high
+
+
+@each_case
+def test_each_axis_has_a_readable_number_of_labels(facts, key):
+    for name in "xy":
+        texts = [tick["text"] for tick in labels(facts[key][name])]
+        assert 2 <= len(texts) <= 12
+        assert len(set(texts)) == len(texts)
+
+
+@each_case
+def test_labels_do_not_touch(facts, key):
+    for name in "xy":
+        ticks = labels(facts[key][name])
+        for one, other in zip(ticks, ticks[1:], strict=False):
+            assert one["pixel"] + one["half"] < other["pixel"] - other["half"]
+
+
+@each_case
+def test_a_label_stands_at_the_value_it_names(facts, key):
+    chart = CASES[key]
+    for name, axis in (("x", chart.x), ("y", chart.y)):
+        found = facts[key][name]
+        low, high = found["home"]
+        for tick in labels(found):
+            value = value_of(tick["text"], found["note"])
+            if axis.scale == "log":
+                coordinate = np.log10(value)
+            elif axis.scale == "symlog":
+                coordinate = np.arcsinh(value / (2 * axis.linear_width)) / np.log(10)
+            else:
+                coordinate = value
+            assert (coordinate - low) / (high - low) == pytest.approx(tick["at"], abs=2e-3)
+
+
+@each_case
+def test_the_curve_is_where_its_values_are(facts, key):
+    points = [point for point in facts[key]["points"] if point]
+    expected = 0 if key == "nothing" else len(points)
+    seen = sum(point["inked"] for point in points)
+    assert (seen >= 0.9 * expected > 0) if expected else seen == 0
+
+
+def test_gaps_stay_gaps(facts):
+    found = facts["gaps"]
+    absent = [i for i, point in enumerate(found["points"]) if point is None]
+    assert absent == [20, 21, 22, 23, 24, 40, 41, 42, 60, 61, 62, 63, 80, 82]
+    inner = [21, 22, 23, 41, 61, 62]
+    assert not any(found["column"][i] for i in inner)
+    assert found["points"][81]["inked"]  # alone between two gaps: a dot
+
+
+def test_titles_say_what_labels_leave_out(facts):
+    assert facts["large"]["y"]["title"] == "E (10⁵⁴ erg)"
+    assert facts["tiny"]["y"]["title"] == "E − 1 (10⁻⁷ erg)"
+    assert facts["offset"]["y"]["title"] == "E − 10⁶ (10⁻³ erg)"
+    assert facts["deep"]["y"]["title"] == "E (erg; linear within ±10⁴⁸)"
+
+
+@each_case
+def test_every_line_and_rule_is_named_inside_the_canvas(facts, key):
+    found = facts[key]
+    texts = [written["text"] for written in found["written"]]
+    for mark in CASES[key].marks:
+        assert not mark.label or mark.label in texts or mark.label in found["legend"]
+    for written in found["written"]:
+        left, top, right, bottom = written["box"]
+        assert left >= 0
+        assert right <= found["canvas"][0]
+        assert top >= 0
+        assert bottom <= found["canvas"][1]
+
+
+@each_case
+def test_written_texts_do_not_overlap(facts, key):
+    boxes = [written["box"] for written in facts[key]["written"]]
+    for i, a in enumerate(boxes):
+        for b in boxes[:i]:
+            assert a[2] <= b[0] or b[2] <= a[0] or a[3] <= b[1] + 0.5 or b[3] <= a[1] + 0.5
+
+
+def test_the_alternative_text_is_the_charts_or_made_from_it(facts):
+    assert facts["narrow"]["label"] == "log 2.1 to 2.9."
+    assert facts["crowded"]["label"] == "crowded text: E against x."
+
+
+@pytest.mark.slow
+def test_all_sixteen_redraw_quickly(page):
+    open_charts(page, list(CASES.values()), height=220)
+    times = [show(page, list(CASES.values()), number=2 + i) for i in range(12)]
+    assert np.median(times) < 500  # a hang or a quadratic step would take seconds
+
+
+def test_zooming_far_in_and_out_ends(page):
+    """Every step at every extreme leaves finite ranges and few ticks, and the page answers in time."""
+    open_charts(page, list(CASES.values()), height=220)
+    page.evaluate(
+        """() => { setTimeout(() => {
+            const worst = [];
+            for (const factor of [0.3, 1 / 0.3]) for (let step = 0; step < 60; step++) for (const view of views) {
+                view.input.zoom({ fx: 0.5, fy: 0.37 }, factor);
+                view.paint(220);
+                const { scales, picture } = view, count = Math.max(picture.xTicks.length, picture.yTicks.length);
+                const ends = [scales.x, scales.y].flatMap((scale) => [scale.value(0), scale.value(1)]);
+                if (!ends.every(Number.isFinite) || count > 250) worst.push([view.key, step, count]);
+            }
+            window.worst = worst;
+        }); }"""
+    )
+    page.wait_for_function("window.worst", timeout=HANG)
+    assert page.evaluate("window.worst") == []
