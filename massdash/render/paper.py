@@ -145,10 +145,9 @@ class Sheet:
     def _colour_bar(self):
         page = self.layout
         mark = self.chart.of(Map)[0]
-        scale = paper_marks.map_scale(mark)
         left = page.left + page.axes_width + GAP
         axes = self._axes(left, BAR)
-        paper_marks.colour_bar(axes, mark, scale)
+        paper_marks.colour_bar(axes, mark)
         axes.xaxis.set_ticks([])
         axes.yaxis.tick_right()
         self._ticks(axes.yaxis, page.bar)

@@ -9,6 +9,7 @@ import numpy as np
 from massdash.charts.chart import Band, Line, Map, Point, Rule, Span
 from massdash.errors import refuse
 from massdash.render import palette
+from massdash.render.scales import forward
 
 WIDTHS = {"single": 88, "double": 180}  # mm: one and two columns of a journal page; common practice, no source
 WIDTH_LIMITS = (40.0, 400.0)  # mm
@@ -38,8 +39,13 @@ def check_chart(chart):
     """Refuse, naming chart and mark, what no renderer could draw."""
     if not KEY.fullmatch(str(chart.key)):
         raise refuse("chart key", repr(chart.key), "letters, digits, '_', '-' and '.', because it becomes a file name")
+    for axis, which in ((chart.x, "x"), (chart.y, "y")):
+        if axis.limits is not None:
+            _check_ends(axis, axis.limits, f"chart {chart.key}, limits of {which}")
     for mark in chart.marks:
         _check_mark(mark, f"chart {chart.key}, mark {getattr(mark, 'key', '?')}")
+    for mark in chart.of(Map):
+        _check_edges(mark, chart)
     if len(chart.of(Map)) > 1:
         raise refuse(f"chart {chart.key}", f"{len(chart.of(Map))} maps", "at most one, for there is one colour bar")
 
@@ -71,7 +77,19 @@ def _check_map(mark, name):
         raise refuse(f"{name}, shape of values", np.shape(mark.values), "a table of rows (y) and columns (x)")
     if mark.palette not in PALETTES:
         raise refuse(f"{name}, palette", repr(mark.palette), " or ".join(PALETTES))
-    for which in ("x", "y"):
-        low, high = getattr(mark, which)
-        if not (np.isfinite([low, high]).all() and low != high):
-            raise refuse(f"{name}, edges in {which}", (low, high), "two different finite numbers")
+    if mark.axis.limits is not None:
+        _check_ends(mark.axis, mark.axis.limits, f"{name}, limits")
+
+
+def _check_edges(mark, chart):
+    for axis, edges, which in ((chart.x, mark.x, "x"), (chart.y, mark.y, "y")):
+        _check_ends(axis, edges, f"chart {chart.key}, mark {mark.key}, edges in {which}")
+
+
+def _check_ends(axis, ends, name):
+    """Two ends must stand apart on the axis' scale."""
+    with np.errstate(over="ignore"):
+        start, stop = forward(ends, axis)
+    if not abs(stop - start) > 0:
+        sign = "positive" if axis.scale == "log" else "finite"
+        raise refuse(name, tuple(ends), f"two different {sign} numbers that double precision can tell apart")

@@ -67,7 +67,7 @@ class Places:
             return 0
         path = dense_path(*np.transpose(candidate.leader), step=1.0)
         near_curves = np.any(np.hypot(*(path[:, None] - curves).transpose(2, 0, 1)) < 1, axis=1)
-        return 2 * near_curves.sum() + 5 * sum(_covered(box, path) > 0 for box in self.boxes)
+        return 2 * near_curves.sum() + 15 * sum(_covered(box, path) > 0 for box in self.boxes)
 
 
 def _covered(box, points):

@@ -83,8 +83,8 @@ def plan(chart, scales, ruler, width, height, *, keyed, title):
     above = EDGE + _height(ruler.size(heading, ruler.font_size, "bold")) + 0.5 * ruler.small
     axes_width, axes_height = 0.7 * width, 0.7 * (height or width)
     for _ in range(5):  # tick labels depend on the axes' size and the other way round; this settles in two or three
-        x = _side(chart.x, scales["x"], ruler, axes_width, horizontal=True)
-        y = _side(chart.y, scales["y"], ruler, axes_height, horizontal=False, cap=0.3 * width)
+        x = _side(scales["x"], ruler, axes_width, horizontal=True)
+        y = _side(scales["y"], ruler, axes_height, horizontal=False, cap=0.3 * width)
         bar = _bar(chart, ruler, axes_height, cap=0.2 * width)
         left = max(EDGE + y.depth, EDGE + _overhang(x, ruler, axes_width)[0])
         right = _right(column, bar, _overhang(x, ruler, axes_width)[1])
@@ -121,8 +121,7 @@ def _places(mark):
 
 
 def _map_remarks(mark):
-    places = paper_marks.map_scale(mark)
-    positions = places.fraction(mark.values)
+    positions = paper_scale.of_map(mark).fraction(mark.values)
     if not np.isfinite(positions).any():
         return ["The map has no values."]
     found = ["Hatched: no value."] if np.isnan(positions).any() else []
@@ -164,9 +163,9 @@ def _column(chart, scales, ruler, width, keyed):
     return tuple(found)
 
 
-def _side(axis, scale, ruler, length, *, horizontal, cap=0.0):
-    ticks = _chosen(axis, scale, ruler, length, horizontal, cap)
-    title = _wrapped_title(axis, ticks, ruler, length)
+def _side(scale, ruler, length, *, horizontal, cap=0.0):
+    ticks = _chosen(scale, ruler, length, horizontal, cap)
+    title = _wrapped_title(scale.axis, ticks, ruler, length)
     sizes = [ruler.size(text, ruler.small) for text in ticks.texts]
     across = 1 if horizontal and not ticks.rotation else 0
     return Side(ticks, title, ruler.size(title, ruler.font_size)[1], max((s[across] for s in sizes), default=0.0))
@@ -185,17 +184,16 @@ def _bar(chart, ruler, length, cap):
     maps = chart.of(Map)
     if not maps:
         return None
-    return _side(maps[0].axis, paper_marks.map_scale(maps[0]), ruler, length, horizontal=False, cap=cap)
+    return _side(paper_scale.of_map(maps[0]), ruler, length, horizontal=False, cap=cap)
 
 
-def _chosen(axis, scale, ruler, length, horizontal, cap):
+def _chosen(scale, ruler, length, horizontal, cap):
     """The densest tick set whose labels stand apart; named ticks are wrapped, and turned when even that is too wide."""
-    options = list(paper_scale.candidates(axis, scale))
-    if axis.ticks is not None:
-        options = _wrapped_ticks(
-            options[0], ruler, 0.9 * length / max(len(axis.ticks), 1) if horizontal else cap, horizontal
-        )
-    fitting = (t for t in options if (len(t.at) > 1 or axis.ticks) and _apart(t, ruler, length, horizontal))
+    options = list(paper_scale.candidates(scale))
+    if scale.axis.ticks is not None:
+        width = 0.9 * length / max(len(scale.axis.ticks), 1) if horizontal else cap
+        options = _wrapped_ticks(options[0], ruler, width, horizontal)
+    fitting = (t for t in options if (len(t.at) > 1 or scale.axis.ticks) and _apart(t, ruler, length, horizontal))
     return next(fitting, options[-1] if options else Ticks((), ()))
 
 

@@ -125,7 +125,7 @@ def _(mark: Point, ax, scales):
 @draw.register
 def _(mark: Map, ax, scales):
     edges = [*scales["x"].fraction(mark.x), *scales["y"].fraction(mark.y)]
-    colours = colour_positions(mark, map_scale(mark), mark.values)
+    colours = np.clip(paper_scale.of_map(mark).fraction(mark.values), 0, 1)
     if np.isnan(colours).any():
         for patch in hatched(edges[0], edges[2], edges[1] - edges[0], edges[3] - edges[2]):
             patch.set_zorder(0.4)
@@ -147,32 +147,15 @@ def image(ax, positions, edges, table):
     ax.set(xlim=(0, 1), ylim=(0, 1))
 
 
-def colour_bar(axes, mark, scale):
+def colour_bar(axes, mark):
     """Fill upright axes with a map's colours and its contour levels."""
-    low, high = (0.5 + 0.5 * end / max(abs(scale.start), abs(scale.stop)) for end in (scale.start, scale.stop))
-    ends = (low, high) if mark.palette == "diverging" else (0.0, 1.0)
-    image(axes, np.linspace(*ends, 256)[:, None], (0, 1, 0, 1), mark.palette)
+    scale = paper_scale.of_map(mark)
+    image(axes, np.linspace(0, 1, 256)[:, None], (0, 1, 0, 1), mark.palette)
     for level in mark.levels:
         if scale.covers(level):
             at = float(scale.fraction(level))
             axes.plot([0, 1], [at, at], color="white", linewidth=1.9, alpha=0.7, solid_capstyle="butt")
             axes.plot([0, 1], [at, at], color=INK, linewidth=1.4 if level == 0 else 0.8, solid_capstyle="butt")
-
-
-def map_scale(mark):
-    """The scale of a map's colour bar: the axis' limits, or all values; diverging ones reach equally far both ways."""
-    scale = paper_scale.of_axis(mark.axis, np.ravel(mark.values), name=f"limits of the map {mark.key}")
-    if mark.palette == "diverging" and mark.axis.limits is None:
-        end = max(abs(scale.start), abs(scale.stop))
-        return paper_scale.Scale(scale.kind, -end, end, scale.linear_width)
-    return scale
-
-
-def colour_positions(mark, scale, values):
-    """Positions 0..1 in the colour table; NaN for what has no value; a diverging table has zero in its middle."""
-    if mark.palette == "diverging":
-        return np.clip(0.5 + 0.5 * scale.forward(values) / max(abs(scale.start), abs(scale.stop)), 0, 1)
-    return np.clip(scale.fraction(values), 0, 1)
 
 
 def contours(mark, scales):
@@ -183,7 +166,7 @@ def contours(mark, scales):
     x, y = (
         _centres(scales[name].fraction(edges), n) for name, edges, n in (("x", mark.x, columns), ("y", mark.y, rows))
     )
-    scale = map_scale(mark)
+    scale = paper_scale.of_map(mark)
     generator = contour_generator(x, y, np.ma.masked_invalid(scale.forward(mark.values)))
     positions = [(level, float(scale.forward(level))) for level in mark.levels]
     found = [(level, generator.lines(position)) for level, position in positions if np.isfinite(position)]

@@ -13,8 +13,8 @@ from math import ceil, floor, isfinite, log10
 
 import numpy as np
 
-from massdash.charts.chart import Axis, Band, Line, Map, Point, Rule, Span
-from massdash.errors import refuse
+from massdash.charts.chart import Axis
+from massdash.render import scales
 
 MOST_TICKS = 7  # labels on one axis before the eye starts to count
 MOST_MINOR = 60
@@ -36,24 +36,28 @@ class Ticks:
 
 @dataclass(frozen=True)
 class Scale:
-    """One axis' road from values to fractions; ``start`` and ``stop`` are its ends in forward space."""
+    """One axis' road from values to fractions; ``start`` and ``stop`` are its ends in scale coordinates."""
 
-    kind: str
+    axis: Axis
     start: float
     stop: float
-    linear_width: float | None = None
+
+    @property
+    def kind(self):
+        return self.axis.scale
 
     def forward(self, values):
-        """Values where the axis is even: log10 v, asinh(v / 2w) / ln 10 (log10(v / w) far from zero), or v."""
-        return forward(self.kind, self.linear_width, values)
+        """Scale coordinates (see ``scales``), where the axis is even."""
+        with np.errstate(over="ignore"):  # what overflows has no place
+            return scales.forward(values, self.axis)
 
     def inverse(self, position):
-        """The value at a position in forward space (may overflow to infinity, never raises)."""
+        """The value at a position in scale coordinates (may overflow to infinity, never raises)."""
         with np.errstate(over="ignore"):
             if self.kind == "log":
                 return float(np.power(10.0, position))
             if self.kind == "symlog":
-                return float(2 * self.linear_width * np.sinh(position * np.log(10)))
+                return float(2 * self.axis.linear_width * np.sinh(position * np.log(10)))
             return float(position)
 
     def fraction(self, values):
@@ -66,83 +70,30 @@ class Scale:
         return bool(-1e-9 <= self.fraction(value) <= 1 + 1e-9)
 
 
-def forward(kind, linear_width, values):
-    """Forward space of a scale kind as float array; what cannot stand on it is NaN."""
-    values = np.asarray(values, float)
-    values = np.where(np.isfinite(values), values, np.nan)
-    if kind == "log":
-        return np.log10(np.where(values > 0, values, np.nan))
-    if kind == "symlog":
-        with np.errstate(over="ignore"):
-            ratio = values / (2 * linear_width)
-        far = np.sign(values) * (np.log10(np.maximum(np.abs(values), linear_width)) - np.log10(linear_width))
-        return np.where(np.isinf(ratio), far, np.arcsinh(ratio) / np.log(10))
-    return values
-
-
 def of_chart(chart, which):
-    """The Scale of a chart's "x" or "y" axis: its own limits, or wide enough for all marks with a small margin."""
-    axis = getattr(chart, which)
-    extents = [np.ravel(np.asarray(v, float)) for mark in chart.marks for v in _extents(mark, which)]
-    values = np.concatenate(extents) if extents else np.empty(0)
-    margin = 0.0 if chart.of(Map) else 0.05 if which == "y" or not chart.of(Line) else 0.0
-    return of_axis(axis, values, name=f"chart {chart.key}, limits of {which}", margin=margin)
+    """The Scale of a chart's "x" or "y" axis, as wide as on the screen."""
+    with np.errstate(over="ignore"):
+        return Scale(getattr(chart, which), *scales.home(chart, which))
 
 
-def of_axis(axis: Axis, values, *, name, margin=0.0):
-    """A Scale for one axis and the values it must hold."""
-    if axis.limits is not None:
-        start, stop = (float(v) for v in forward(axis.scale, axis.linear_width, axis.limits))
-        if not (isfinite(start) and isfinite(stop) and start != stop):
-            kind = "two different positive numbers" if axis.scale == "log" else "two different finite numbers"
-            raise refuse(name, axis.limits, kind)
-        return Scale(axis.scale, start, stop, axis.linear_width)
-    places = forward(axis.scale, axis.linear_width, values)
-    places = places[np.isfinite(places)]
-    start, stop = (float(places.min()), float(places.max())) if places.size else _empty_range(axis)
-    start, stop = _widened(axis, start, stop, margin)
-    return Scale(axis.scale, start, stop, axis.linear_width)
+def of_map(mark):
+    """The Scale of a map's colour bar; diverging ones reach equally far both ways."""
+    with np.errstate(over="ignore"):
+        return Scale(mark.axis, *scales.map_range(mark))
 
 
-def _extents(mark, which):
-    if isinstance(mark, Span | Rule) and mark.axis != which:
-        return ()
-    if isinstance(mark, Span):
-        return [v for v in (mark.low, mark.high) if v is not None]
-    if isinstance(mark, Rule):
-        return [mark.at]
-    if isinstance(mark, Band) and which == "y":
-        return [mark.low, mark.high]
-    return [getattr(mark, which)] if isinstance(mark, Line | Band | Point | Map) else []
-
-
-def _empty_range(axis):
-    return {"linear": (0.0, 1.0), "log": (0.0, 1.0), "symlog": (-0.5, 0.5)}[axis.scale]
-
-
-def _widened(axis, start, stop, margin):
-    """A margin at both ends; a range too narrow for double precision becomes one around its value."""
-    if stop - start > 1e-12 * max(abs(start), abs(stop)):
-        room = margin * (stop - start)
-    elif axis.scale == "linear":
-        room = 0.1 * abs(start) or 1.0
-    else:
-        room = 0.3
-    return start - room, stop + room
-
-
-def candidates(axis: Axis, scale: Scale) -> Iterator[Ticks]:
+def candidates(scale: Scale) -> Iterator[Ticks]:
     """Possible tick sets, densest first; the last one has few labels and fits nearly everywhere."""
-    if axis.ticks is not None:
-        yield _given(axis, scale)
+    if scale.axis.ticks is not None:
+        yield _given(scale)
         return
-    if axis.scale != "linear":
+    if scale.kind != "linear":
         yield from _decades(scale)
     yield from _even(scale)
 
 
-def _given(axis, scale):
-    kept = [(float(scale.fraction(v)), text) for v, text in axis.ticks if scale.covers(v)]
+def _given(scale):
+    kept = [(float(scale.fraction(v)), text) for v, text in scale.axis.ticks if scale.covers(v)]
     return Ticks(tuple(at for at, _ in kept), tuple(plain(text) for _, text in kept))
 
 
@@ -173,12 +124,12 @@ def _signed(scale, mantissas, stride, least=1.0):
     if scale.kind == "log":
         exponents = [k for k in range(floor(low), ceil(high) + 1) if k % stride == 0]
         return [(log10(m) + k, m, k) for k in exponents for m in mantissas]
-    unit = log10(scale.linear_width)
+    unit = log10(scale.axis.linear_width)
     first = floor(unit + log10(least) + 1e-9)
     exponents = range(first, ceil(unit + max(abs(low), abs(high))) + 1, stride)
     marks = [(sign * m, k) for k in exponents for m in mantissas for sign in (-1, 1)]
     places = [(float(scale.forward(float(f"{m}e{k}"))), m, k) for m, k in marks]
-    nearest = float(scale.forward(least * scale.linear_width)) * (1 - 1e-9)
+    nearest = float(scale.forward(least * scale.axis.linear_width)) * (1 - 1e-9)
     return [(0.0, 0, 0), *(place for place in places if abs(place[0]) >= nearest)]
 
 

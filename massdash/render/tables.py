@@ -8,7 +8,8 @@ import numpy as np
 
 from massdash.charts.chart import Band, Line, Map, Point, Rule, Span
 from massdash.render.paper_check import check_chart
-from massdash.render.paper_scale import Scale, forward
+from massdash.render.paper_scale import Scale
+from massdash.render.scales import forward
 
 NUMBERS = ("x", "y", "x_low", "x_high", "y_low", "y_high", "z")
 
@@ -77,8 +78,8 @@ def _cells(mark: Map, chart):
 
 def centres(axis, edges, count):
     """The values at the centres of ``count`` cells between two edges of an axis."""
-    start, stop = (float(v) for v in forward(axis.scale, axis.linear_width, edges))
-    scale = Scale(axis.scale, start, stop, axis.linear_width)
+    start, stop = (float(v) for v in forward(edges, axis))
+    scale = Scale(axis, start, stop)
     return np.array([scale.inverse(start + (i + 0.5) / count * (stop - start)) for i in range(count)])
 
 
