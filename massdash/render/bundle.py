@@ -8,7 +8,7 @@ import json
 from functools import cache
 from pathlib import Path
 
-from . import palette
+from massdash.render import palette
 
 JS = Path(__file__).with_name("js")
 

@@ -11,10 +11,12 @@ import re
 import anywidget
 import traitlets
 
-from ..errors import InputError, refuse
-from . import bundle, wire
+from massdash.errors import InputError, refuse
+from massdash.render import bundle, wire
+from massdash.render.units import unit_text
+from massdash.scenario.fields import short
 
-NUMBER = re.compile(r"[+-]?(\d+\.?\d*|\.\d+)([eE][+-]?\d+)?")
+NUMBER = re.compile(r"[+-]?([0-9]+\.?[0-9]*|\.[0-9]+)([eE][+-]?[0-9]+)?")
 LONGEST = 40  # characters; a typed number needs no more
 
 
@@ -24,19 +26,28 @@ def read_number(text):
     return float(text) if len(text) <= LONGEST and NUMBER.fullmatch(text) else None
 
 
+class Allowed(traitlets.Float):
+    """A float, or None, that its widget allows; traitlets' own checks let None pass unseen."""
+
+    def validate(self, obj, value):
+        return obj.checked(None if value is None else super().validate(obj, value))
+
+
 class NumberField(anywidget.AnyWidget):
     """A control for one number.
 
-    ``value`` is always a float within ``minimum``..``maximum``, or None when ``optional``; ``number`` is the last
-    number it had. ``message`` is shown below the field, empty when there is nothing to say. ``dragging`` is true while
-    the slider is held. On a logarithmic ``scale`` the slider gives ``digits`` significant digits, on a linear one
-    multiples of ``step`` (None: a thousandth of the range). The browser writes ``entry`` only.
+    ``unit`` is written as astropy writes it and shown as in print. ``value`` is always a float within
+    ``minimum``..``maximum``, or None when ``optional``; ``number`` is the last number it had. ``message`` is shown
+    below the field, empty when there is nothing to say. ``dragging`` is true while the slider is held. On a logarithmic
+    ``scale`` the slider gives ``digits`` significant digits, on a linear one multiples of ``step`` (None: a thousandth
+    of the range). The browser writes ``entry`` only.
     """
 
     _esm = bundle.field_module()
     _css = bundle.stylesheet("field")
     label = traitlets.Unicode().tag(sync=True)
     unit = traitlets.Unicode().tag(sync=True)
+    unit_shown = traitlets.Unicode().tag(sync=True)
     help = traitlets.Unicode().tag(sync=True)
     minimum = traitlets.Float().tag(sync=True)
     maximum = traitlets.Float().tag(sync=True)
@@ -46,7 +57,7 @@ class NumberField(anywidget.AnyWidget):
     default = traitlets.Float(None, allow_none=True).tag(sync=True)
     optional = traitlets.Bool(False).tag(sync=True)
     none_label = traitlets.Unicode("not given").tag(sync=True)
-    value = traitlets.Float(None, allow_none=True).tag(sync=True)
+    value = Allowed(None).tag(sync=True)
     number = traitlets.Float().tag(sync=True)
     message = traitlets.Unicode().tag(sync=True)
     dragging = traitlets.Bool(False).tag(sync=True)
@@ -64,8 +75,7 @@ class NumberField(anywidget.AnyWidget):
         middle = math.sqrt(minimum) * math.sqrt(maximum) if scale == "log" else (minimum + maximum) / 2
         number = next(number for number in (value, default, middle) if number is not None)
         bounds = {"label": label, "minimum": minimum, "maximum": maximum, "default": default}
-        super().__init__(**bounds, **traits, number=number)
-        self.value = value
+        super().__init__(**bounds, **traits, number=number, value=value)  # the value last: it is held to the others
         self.observe(self._receive, "entry")
 
     def observe_value(self, callback):
@@ -79,17 +89,20 @@ class NumberField(anywidget.AnyWidget):
     @property
     def allowed(self):
         """What may be given, in words: the end of every refusal."""
-        words = f"{self.minimum:g} to {self.maximum:g} {self.unit}".rstrip()
+        words = f"{short(self.minimum)} to {short(self.maximum)} {self.unit}".rstrip()
         return f"{words}, or {self.none_label}" if self.optional else words
 
-    @traitlets.validate("value")
-    def _check(self, proposal):
-        value = proposal["value"]
+    def checked(self, value):
+        """The value, if it is allowed; InputError otherwise."""
         if value is None and self.optional:
             return None
         if value is None or not (self.minimum <= value <= self.maximum):
             raise refuse(self.label, "nothing" if value is None else repr(value), self.allowed)
         return value
+
+    @traitlets.observe("unit")
+    def _show_unit(self, change):
+        self.unit_shown = unit_text(change["new"])
 
     @traitlets.observe("value")
     def _keep_number(self, change):
@@ -113,8 +126,7 @@ class NumberField(anywidget.AnyWidget):
 
     def _take(self, entry):
         try:
-            value = self._proposed(entry.get("kind"), entry.get("value"))
-            self._check({"value": value})
+            value = self.checked(self._proposed(entry.get("kind"), entry.get("value")))
         except InputError as error:
             self.message = str(error)
             return

@@ -13,8 +13,9 @@ import math
 
 import numpy as np
 
-from ..charts.chart import Band, Line, Map, Point, Rule, Span
-from .scales import extent, forward, home, map_range
+from massdash.charts.chart import Band, Line, Map, Point, Rule, Span
+from massdash.render.scales import extent, forward, home, map_range
+from massdash.render.units import unit_text
 
 FLOAT32_STEP = 6e-8  # relative
 SCREEN_STEP = 1e-4  # of the axis; a tenth of a pixel on a large screen
@@ -72,7 +73,7 @@ def _chart_structure(chart):
 
 
 def _axis_structure(axis):
-    return {"label": axis.label, "unit": axis.unit, "scale": axis.scale}
+    return {"label": axis.label, "unit": unit_text(axis.unit), "scale": axis.scale}
 
 
 MARK_STRUCTURE = {

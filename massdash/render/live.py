@@ -8,8 +8,8 @@ page (``data-frame``) and announces it with the event ``massdash:painted``.
 import anywidget
 import traitlets
 
-from . import bundle, wire
-from .frame import frame, structure
+from massdash.render import bundle, wire
+from massdash.render.frame import frame, structure
 
 KINDS = ("click", "drag", "drop")
 

@@ -40,8 +40,8 @@ SEQUENTIAL = (
     (0.76, 0.095, 150.0),
     (0.95, 0.075, 95.0),
 )
-COOL_HALF = ((0.32, 0.090, 255.0), (0.53, 0.110, 245.0), (0.75, 0.075, 235.0), (0.965, 0.0, 235.0))
-WARM_HALF = ((0.965, 0.0, 60.0), (0.75, 0.085, 62.0), (0.53, 0.115, 48.0), (0.32, 0.090, 38.0))
+BELOW = ((0.32, 0.090, 38.0), (0.53, 0.115, 48.0), (0.75, 0.085, 62.0), (0.965, 0.0, 60.0))
+ABOVE = ((0.965, 0.0, 235.0), (0.75, 0.075, 235.0), (0.53, 0.110, 245.0), (0.32, 0.090, 255.0))
 
 
 @dataclass(frozen=True)
@@ -149,12 +149,12 @@ def _between(anchors, count):
 
 @cache
 def colour_table(name):
-    """256 colours of a map as uint8, shape (256, 3): "sequential" dark to light, or "diverging", cool below and warm
+    """256 colours of a map as uint8, shape (256, 3): "sequential" dark to light, or "diverging", warm below and cool
     above a middle without colour."""
     if name == "sequential":
         table = _between(SEQUENTIAL, 256)
     elif name == "diverging":
-        table = np.concatenate([_between(WARM_HALF[::-1], 128), _between(COOL_HALF[::-1], 128)])
+        table = np.concatenate([_between(BELOW, 128), _between(ABOVE, 128)])
     else:
         raise ValueError(f"colour table {name!r} is neither 'sequential' nor 'diverging'")
     table.flags.writeable = False

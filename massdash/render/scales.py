@@ -7,7 +7,7 @@ Szalay 1999, AJ 118, 1406). What a scale cannot show is NaN, which every drawing
 
 import numpy as np
 
-from ..charts.chart import Band, Line, Map, Point, Rule
+from massdash.charts.chart import Band, Line, Map, Point, Rule
 
 MARGIN = 0.04  # of the data's range, left free on both sides
 LEAST = 1e-12  # narrowest axis, relative to its larger end: float64 resolves no finer steps

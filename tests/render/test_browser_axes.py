@@ -1,6 +1,8 @@
 """The sixteen hard charts in a real browser: ranges, ticks, labels, gaps and pixels."""
 
+import itertools
 import re
+from pathlib import Path
 
 import numpy as np
 import pytest
@@ -11,44 +13,13 @@ pytestmark = pytest.mark.browser
 CASES = hard_cases()
 SUPERSCRIPTS = str.maketrans("⁻⁰¹²³⁴⁵⁶⁷⁸⁹", "-0123456789")
 
-# All a test wants to know of a painted chart. A label's box is [left, right] along its axis in pixels.
-FACTS = """() => views.map((view) => {
-    const { picture, scales } = view, dense = view.canvas.width / view.width;
-    const pixels = view.canvas.getContext("2d").getImageData(0, 0, view.canvas.width, view.canvas.height).data;
-    const inked = (x, y) => {
-        let most = 0;
-        for (let dx = -2; dx <= 2; dx++) for (let dy = -2; dy <= 2; dy++) {
-            const at = 4 * (Math.round((y + dy) * dense) * view.canvas.width + Math.round((x + dx) * dense));
-            const [r, g, b, a] = pixels.slice(at, at + 4);
-            if (a > 100) most = Math.max(most, b - r); // the first style is blue, everything else here is grey
-        }
-        return most > 60;
-    };
-    const axis = (scale, ticks, length, size) => ({
-        home: scale.home, note: scale.note, title: scale.title(),
-        ticks: ticks.map((tick) => ({ ...tick, half: size(tick.text) / 2, pixel: tick.at * length })),
-    });
-    const line = view.marks.find((mark) => mark.kind === "line" && mark.style === 0);
-    const points = line ? Array.from(line.x, (t, i) => [picture.X(scales.x.fraction(t)), picture.Y(scales.y.fraction(line.y[i]))]) : [];
-    return {
-        x: axis(scales.x, picture.xTicks, picture.box.width, textWidth_), y: axis(scales.y, picture.yTicks, picture.box.height, () => 12),
-        points: points.map(([x, y]) => Number.isFinite(x + y) ? { x, y, inked: inked(x, y) } : null),
-        column: points.map(([x]) => Array.from({ length: 60 }, (_, k) => inked(x, picture.box.top + 2 + k * (picture.box.height - 4) / 59)).some(Boolean)),
-        written: picture.texts.written, legend: view.legend.textContent, canvas: [view.width, view.canvas.clientHeight],
-        label: view.plot.getAttribute("aria-label"),
-    };
-})"""
+FACTS = Path(__file__).with_name("facts.js").read_text(encoding="utf-8")
 
 
 @pytest.fixture(scope="module")
 def facts(chromium):
     page = chromium.new_page(viewport={"width": 1100, "height": 900})
     open_charts(page, list(CASES.values()), height=220)
-    page.evaluate("""() => {
-        const ruler = document.createElement("canvas").getContext("2d");
-        ruler.font = "12px 'DejaVu Sans', 'Segoe UI', system-ui, sans-serif";
-        window.textWidth_ = (text) => ruler.measureText(text).width;
-    }""")
     found = dict(zip(CASES, page.evaluate(FACTS), strict=True))
     page.close()
     return found
@@ -88,7 +59,7 @@ def test_each_axis_has_a_readable_number_of_labels(facts, key):
 def test_labels_do_not_touch(facts, key):
     for name in "xy":
         ticks = labels(facts[key][name])
-        for one, other in zip(ticks, ticks[1:], strict=False):
+        for one, other in itertools.pairwise(ticks):
             assert one["pixel"] + one["half"] < other["pixel"] - other["half"]
 
 

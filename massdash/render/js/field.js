@@ -136,7 +136,7 @@ class Field {
   }
 
   speak(value) {
-    const unit = this.get("unit");
+    const unit = this.get("unit_shown");
     this.slider.setAttribute("aria-valuenow", String(value));
     this.slider.setAttribute("aria-valuetext", `${formatNumber(value, 6)}${unit ? " " + unit : ""}`);
   }
@@ -151,7 +151,7 @@ class Field {
   }
 
   showWords() {
-    const [label, unit, help] = ["label", "unit", "help"].map(this.get), { minimum, maximum } = this.track;
+    const [label, unit, help] = ["label", "unit_shown", "help"].map(this.get), { minimum, maximum } = this.track;
     this.label.textContent = label;
     this.unit.textContent = unit;
     this.slider.setAttribute("aria-label", unit ? `${label} in ${unit}` : label);
@@ -164,7 +164,7 @@ class Field {
   }
 
   showReset(label) {
-    const value = this.get("default"), unit = this.get("unit");
+    const value = this.get("default"), unit = this.get("unit_shown");
     const words = value === null ? this.get("none_label") : `${formatNumber(value, 6)} ${unit}`.trim();
     this.reset.title = `back to ${words}`;
     this.reset.setAttribute("aria-label", `${label}: back to ${words}`);
