@@ -8,7 +8,7 @@ from jupyter_server.services.kernels.kernelmanager import AsyncMappingKernelMana
 from traitlets import Dict, Unicode
 
 # No history on disk, and no start-up files of the user, which could print, draw or fail.
-LEAN = ["--HistoryManager.enabled=False", "--InteractiveShell.cache_size=0"]
+LEAN = ["--HistoryManager.enabled=False", "--InteractiveShell.cache_size=0", "--log-level=ERROR"]
 
 
 class OnlyThisPython(KernelSpecManager):

@@ -39,7 +39,6 @@ HEADERS = {
 # A scenario file is at most 1 MiB; larger ones shall reach the sentence that refuses them, up to a point.
 LARGEST_FRAME = 64 * 1024 * 1024
 CULL_AFTER, CULL_EVERY = 300, 30  # seconds
-PING_TIMEOUT = 30_000  # milliseconds, as long as the interval; the server's own default is longer and draws a warning
 
 
 def settings(notebook, environment, first_line=""):
@@ -70,7 +69,7 @@ def _server(voila, notebook):
         "websocket_max_message_size": LARGEST_FRAME,
         "websocket_compression_options": None,
         "xsrf_cookie_kwargs": {"samesite": "Strict"},
-        "ws_ping_timeout": PING_TIMEOUT,
+        "ws_ping_interval": 0,  # within one machine a broken connection is noticed without asking
     }
 
 

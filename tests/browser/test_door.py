@@ -200,7 +200,8 @@ def test_ctrl_c_ends_it_and_its_kernels():
         assert [command(pid) for pid in kernels] == ["" for _ in kernels]
         with pytest.raises(ConnectionRefusedError):
             socket.create_connection(("127.0.0.1", running.port))
-        assert running.process.stderr.read() == "The dashboard is open at this address; Ctrl-C ends it.\n"
+        assert running.out.read_text() == running.address + "\n"
+        assert running.err.read_text() == "The dashboard is open at this address; Ctrl-C ends it.\n"
 
 
 def test_the_opened_browser_gets_an_address_that_works_once(tmp_path):

@@ -3,27 +3,31 @@
 import contextlib
 import http.client
 import os
-import select
+import re
 import signal
 import subprocess
 import sys
+import tempfile
 import time
 from dataclasses import dataclass
 from pathlib import Path
 from urllib.parse import parse_qs, urlsplit
 
-ROOT = Path(__file__).resolve().parents[2]
-STANDIN = [sys.executable, str(Path(__file__).parent / "standin" / "serve.py")]
+ROOT = Path(__file__).resolve().parents[1]
+NOTEBOOK = ROOT / "notebooks" / "dashboard.ipynb"
+STANDIN = [sys.executable, str(ROOT / "tests" / "browser" / "standin" / "serve.py")]
 DASHBOARD = [sys.executable, "-m", "massdash", "dashboard", "--no-browser"]
 PATIENCE = 60  # seconds; only ever waited for when something is broken
 
 
 @dataclass
 class Running:
-    """A server process and its printed address."""
+    """A server process, its printed address, and the files that collect what it says."""
 
     process: subprocess.Popen
     address: str
+    out: Path
+    err: Path
 
     @property
     def port(self):
@@ -57,30 +61,37 @@ class Running:
 
 
 @contextlib.contextmanager
-def started(arguments, **environment):
+def started(arguments, *, address=r"http://127\.0\.0\.1:\d+/\S*", cwd=ROOT, **environment):
     """A Running server for the duration of a block; it is ended with Ctrl-C."""
     told = {**os.environ, "PYTHONPATH": str(ROOT), **environment}
-    process = subprocess.Popen(arguments, stdout=subprocess.PIPE, stderr=subprocess.PIPE, text=True, env=told)
-    try:
-        yield Running(process, first_line(process))
-    finally:
+    with tempfile.TemporaryDirectory() as folder:
+        out, err = Path(folder, "out"), Path(folder, "err")
+        with out.open("w") as to_out, err.open("w") as to_err:
+            process = subprocess.Popen(arguments, stdout=to_out, stderr=to_err, env=told, cwd=cwd)
+        try:
+            yield Running(process, _printed(address, process, out, err), out, err)
+        finally:
+            end(process)
+
+
+def end(process):
+    """Ctrl-C, and more when that does not help."""
+    for ending in (signal.SIGINT, signal.SIGINT, signal.SIGKILL):
         if process.poll() is None:
-            process.send_signal(signal.SIGINT)
-        with contextlib.suppress(subprocess.TimeoutExpired):
-            process.wait(PATIENCE)
-        process.kill()
-        process.stdout.close()
-        process.stderr.close()
+            process.send_signal(ending)
+            with contextlib.suppress(subprocess.TimeoutExpired):
+                process.wait(20)
 
 
-def first_line(process):
-    """The first line on stdout, or a failure that shows stderr."""
-    ready, _, _ = select.select([process.stdout], [], [], PATIENCE)
-    line = process.stdout.readline().strip() if ready else ""
-    if not line:
-        process.kill()
-        raise AssertionError(f"no address was printed: {process.stderr.read()}")
-    return line
+def _printed(address, process, out, err):
+    def said():
+        return out.read_text() + err.read_text()
+
+    wait_until(lambda: re.search(address, said()) or process.poll() is not None, "an address printed")
+    found = re.search(address, said())
+    if not found:
+        raise AssertionError(f"no address was printed, status {process.poll()}: {said()}")
+    return found[0]
 
 
 def children(pid):
