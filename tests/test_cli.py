@@ -226,8 +226,9 @@ def test_the_program_as_a_process():
     assert err == "massdash: none.yaml: the file cannot be read (No such file or directory)\n"
 
 
-def test_a_reader_that_leaves_is_no_failure():
-    started = process("evaluate", "builtin:lantern")
+@pytest.mark.parametrize("arguments", [["evaluate", "builtin:lantern"], ["--version"]])
+def test_a_reader_that_leaves_is_no_failure(arguments):
+    started = process(*arguments)
     started.stdout.close()
     assert started.wait(timeout=60) == 0
     assert started.stderr.read() == ""
@@ -246,6 +247,15 @@ def test_a_narrow_terminal_encoding_is_no_failure():
     status, out, err = finished("evaluate", "builtin:lantern", env=plain)
     assert (status, err) == (0, "")
     assert out.isascii()
+
+
+def test_what_programs_read_is_utf8_on_any_terminal(tmp_path):
+    massdash.save(massdash.Scenario(label="Läntern ★"), tmp_path / "a.yaml")
+    plain = {"PYTHONIOENCODING": "ascii", "PYTHONUTF8": "0"}
+    started = process("evaluate", str(tmp_path / "a.yaml"), "--format", "latex", env=plain, encoding="utf-8")
+    out, err = started.communicate(timeout=60)
+    assert (started.returncode, err) == (0, "")
+    assert "Läntern ★" in out
 
 
 def test_standard_output_may_be_closed(monkeypatch):

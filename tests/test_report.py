@@ -181,3 +181,8 @@ def test_provenance_is_plain_and_complete(lantern):
     assert json.loads(json.dumps(about)) == about
     assert list(about) == ["program", "constants", "data", "scenario", "sources"]
     assert len(set(about["sources"])) == len(about["sources"]) > 3
+
+
+def test_sources_are_those_of_values(lantern):
+    assert "Nobody" in sources(changed(lantern, "radius", source="Nobody"))
+    assert "Nobody" not in sources(changed(lantern, "radius", source="Nobody", value=None, note="asleep"))

@@ -85,6 +85,8 @@ def test_awkward_labels_survive(label):
 def test_files_are_pleasant_to_read():
     scenario = Scenario(label="Lantern", mass=1.2e5 * u.Msun, infall_rate=None, spin=0.1)
     assert to_text(scenario) == "massdash: 1\nlabel: Lantern\nmass: 120000.0 solMass\nspin: 0.1\ninfall_rate: null\n"
+    long = "Läntern 日 " * 8
+    assert f"label: {long!r}\n" in to_text(Scenario(label=long))
 
 
 def test_what_people_write_is_read():

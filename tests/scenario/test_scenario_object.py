@@ -162,6 +162,17 @@ def test_a_quantity_must_be_one_real_number():
             Scenario(mass=wrong)
 
 
+def test_arrays_are_refused_even_of_one_number():
+    for wrong, shape in (([1e5] * u.Msun, r"\(1,\)"), ([[1, 2]] * u.K, r"\(1, 2\)")):
+        with pytest.raises(InputError, match=rf"^mass: an array of shape {shape} is not allowed"):
+            Scenario(mass=wrong)
+
+
+def test_overlong_texts_never_reach_the_unit_parser():
+    with pytest.raises(InputError, match=r"^mass: '1e5 solMass.* is not allowed"):
+        Scenario(mass="1e5 solMass" + " " * 100)
+
+
 def test_numbers_too_large_to_convert_are_refused_without_a_warning():
     for wrong in (1e308 * u.Unit("1e300 kg"), "1e400 solMass", "1 1e400 kg", "1e308 Gpc3 g / cm3"):
         with pytest.raises(InputError, match=r"^mass: "):
