@@ -67,7 +67,7 @@ class Scale:
 
     def covers(self, value):
         """True for a value inside the axis."""
-        return bool(-1e-9 <= self.fraction(value) <= 1 + 1e-9)
+        return bool(-1e-6 <= self.fraction(value) <= 1 + 1e-6)
 
 
 def of_chart(chart, which):
@@ -173,17 +173,23 @@ def _step(least):
 
 def _labelled(scale, low, high, mantissa, exponent):
     step = float(f"{mantissa}e{exponent}")
-    numbers = [n * mantissa for n in range(ceil(low / step - 1e-6), floor(high / step + 1e-6) + 1)]
+    near = max(1e-9, 1e-15 * abs(low / step), 1e-15 * abs(high / step))  # an end that rounding has moved still counts
+    multiples = range(ceil(low / step - near), floor(high / step + near) + 1)
+    numbers = [n * mantissa for n in multiples if scale.covers(_value(n * mantissa, exponent))]
     offset = _offset(numbers, low, high, exponent)
     rest = [n - offset for n in numbers]
     top = exponent + len(str(max((abs(n) for n in rest), default=0))) - 1
     power = 0 if -3 <= top <= 4 or not any(rest) else top
     return Ticks(
-        tuple(float(scale.fraction(float(Decimal(n).scaleb(exponent)))) for n in numbers),
+        tuple(float(scale.fraction(_value(n, exponent))) for n in numbers),
         tuple(_digits(Decimal(n).scaleb(exponent - power)) for n in rest),
         power=power,
         offset=_offset_text(offset, exponent),
     )
+
+
+def _value(number, exponent):
+    return float(Decimal(number).scaleb(exponent))
 
 
 def _offset(numbers, low, high, exponent):

@@ -20,8 +20,8 @@ def chart_table(chart, provenance=None):
     Columns: ``mark`` (key), ``kind`` (line, band, span, rule, map, or a point's kind), ``label``; then, as far as the
     chart has them, ``x``, ``y``, the ends ``x_low, x_high, y_low, y_high`` of bands and spans, and ``z``, the map's
     values at its cells' centres. Numbers are float64 in the axes' units, NaN where a mark has no such number. The
-    metadata hold title, text alternative, notes, sources, axes and ``provenance``; there too stand units that astropy
-    does not know.
+    metadata hold title, text alternative, notes, sources, axes and ``provenance`` (texts of several lines, like the
+    scenario's file, as lists of lines); there too stand units that astropy does not know.
     """
     from astropy.table import QTable
 
@@ -51,8 +51,14 @@ def _texts(chart):
     return {
         "mark": [mark.key for mark in chart.marks],
         "kind": [getattr(mark, "kind", type(mark).__name__.lower()) for mark in chart.marks],
-        "label": [" ".join(getattr(mark, "label", "").split()) for mark in chart.marks],
+        "label": [_label(mark) for mark in chart.marks],
     }
+
+
+def _label(mark):
+    """In one line and never empty, for an empty text is read back as a gap."""
+    label = mark.axis.label if isinstance(mark, Map) else mark.label
+    return " ".join(label.split()) or mark.key
 
 
 def _block(mark, chart):
@@ -107,7 +113,13 @@ def _meta(chart, provenance):
         "sources": list(chart.sources),
         "axes": {name: _axis_meta(axis) for name, axis in axes.items()},
     }
-    return meta | ({"provenance": dict(provenance)} if provenance is not None else {})
+    origin = {name: _in_lines(value) for name, value in (provenance or {}).items()}
+    return meta | ({"provenance": origin} if origin else {})
+
+
+def _in_lines(value):
+    """A text of several lines as a list of them, because the header's reader joins lines."""
+    return value.splitlines() if isinstance(value, str) and "\n" in value else value
 
 
 def _axis_meta(axis):

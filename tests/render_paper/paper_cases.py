@@ -58,7 +58,9 @@ def every_mark():
     energy = 2e54 * (x / 0.3) ** 0.6 * (x - 0.35) / (1 + x**2)
     kinds = ("present", "stable", "unstable", "onset", "end")
     at = [0.05, 0.15, 1.2, 0.35, 6.0]
-    points = tuple(Point(kind, kind, t, float(np.interp(t, x, energy)), kind) for kind, t in zip(kinds, at, strict=True))
+    points = tuple(
+        Point(kind, kind, t, float(np.interp(t, x, energy)), kind) for kind, t in zip(kinds, at, strict=True)
+    )
     return Chart(
         "energy",
         "Binding energy of Lantern at its own entropy",
@@ -85,13 +87,14 @@ def margin_map(palette="diverging", n=200):
     m, t = np.logspace(3, 8, n), np.logspace(6.5, 9, n)[:, None]
     values = np.log10(1e13 / (m * t)) / 3 + 0.05 * np.sin(3 * np.log10(m))
     values[: n // 10, : n // 10] = np.nan
+    levels = (-1.0, -0.5, 0.0, 0.5, 1.0)
     return Chart(
         "map",
         "Where a star settles",
         Axis("Mass", "M☉", "log"),
         Axis("Ignition temperature", "K", "log"),
         (
-            Map("margin", Axis("Stability margin"), (1e3, 1e8), (10**6.5, 1e9), values, (-1.0, -0.5, 0.0, 0.5, 1.0), palette),
+            Map("margin", Axis("Stability margin"), (1e3, 1e8), (10**6.5, 1e9), values, levels, palette),
             Line("closed", "closed form", m, 1e13 / m * 0.8, style=6),
             Point("present", "Lantern", 1.2e5, 1e7),
         ),
