@@ -14,7 +14,7 @@ CONTROLS = {
     "Ignition temperature": "ignition_temperature",
 }
 BROKEN = {
-    "mass: [1, 2\n": "line",
+    "mass: [1, 2\n": "mass",
     "massdash: 1\nmass: .nan solMass\n": "mass",
     "massdash: 1\nmass: 1e99 solMass\n": "mass",
     "massdash: 1\nmass: 5 km\n": "mass",
