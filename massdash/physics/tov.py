@@ -27,8 +27,8 @@ _ITERATIONS = 200
 class Structure:
     """A batch of N stars. Surface values (N,): ``radius`` xi, ``mass`` v, and ``binding`` (v - v_rest)/sigma, negative
     when bound. Values at the nodes (k, N), centre to surface: ``square`` xi^2, ``enclosed`` v, ``enclosed_binding``,
-    ``enthalpy`` h, ``state``; ``rate`` d(xi^2)/dq and the ``weight`` (k, 1) of integrals over q of what rises like a sphere's volume or
-    surface, that is q^(1/2) times something smooth. ``matter`` is the barotrope.
+    ``enthalpy`` h, ``state``; ``rate`` d(xi^2)/dq and the ``weight`` (k, 1) of integrals over q of what rises from the
+    centre like q^(1/2) times something smooth, as volume integrals do. ``matter`` is the barotrope.
     """
 
     matter: object
