@@ -36,7 +36,8 @@ def refused(capsys, *arguments):
 
 def process(*arguments, **options):
     """The real program, as a started process."""
-    environment = os.environ | {"PYTHONPATH": str(ROOT)} | options.pop("env", {})
+    plain = {"PYTHONPATH": str(ROOT), "PYTHONUNBUFFERED": ""}  # buffered, as for most users
+    environment = os.environ | plain | options.pop("env", {})
     command = [sys.executable, "-m", "massdash", *arguments]
     return subprocess.Popen(
         command,
