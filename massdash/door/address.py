@@ -3,7 +3,7 @@
 import errno
 import socket
 
-from ..errors import refuse
+from ..errors import InputError, refuse
 
 LOOPBACK = "127.0.0.1"
 FIRST_PORT = 8630
@@ -28,12 +28,13 @@ def bind(port=None):
 
 
 def _bind_wished(port):
-    if not (isinstance(port, int) and 1024 <= port <= 65535):
+    if not (type(port) is int and 1024 <= port <= 65535):
         raise refuse("port", port, ALLOWED)
     try:
         return _listen(port)
     except OSError as error:
-        raise refuse("port", f"{port} (in use, or not permitted)", ALLOWED) from error
+        sentence = f"port: {port} is in use or not permitted; give {ALLOWED}, or none"
+        raise InputError(sentence, name="port", got=port, allowed=ALLOWED) from error
 
 
 def _listen(port):
