@@ -151,9 +151,13 @@ class Star:
         return 1.0 - self.critical / self.stiffness
 
 
-def stars(beta, sigma, mu):
-    """The Star of each (beta_c, sigma) at mean molecular weight ``mu``; raises ComputationError outside the box."""
-    beta, sigma, mu = np.broadcast_arrays(*(np.asarray(one, float) for one in (beta, sigma, mu)))
+def stars(beta, sigma, mu, support=0.0):
+    """The Star of each (beta_c, sigma) at mean molecular weight ``mu``; raises ComputationError outside the box.
+
+    ``support`` is what rotation or a background adds to the effective Gamma_1: it lowers ``critical`` and stiffens the
+    pulsation, and leaves the spherical structure as it is.
+    """
+    beta, sigma, mu, support = np.broadcast_arrays(*(np.asarray(one, float) for one in (beta, sigma, mu, support)))
     if not np.all(table().covers(beta, sigma)):
         raise ComputationError("a star lies outside the table of relativistic stars")
     mass, rest, radius, binding, square, stiffness, response = lookup(beta, sigma, table().names)
@@ -174,7 +178,7 @@ def stars(beta, sigma, mu):
         radius=size,
         energy=unit * sigma * binding * C**2,
         compactness=compactness,
-        frequency_squared=square * compactness * C**2 / size**2,
+        frequency_squared=(square + support / response) * compactness * C**2 / size**2,
         stiffness=stiffness,
-        critical=stiffness - response * square,
+        critical=stiffness - response * square - support,
     )

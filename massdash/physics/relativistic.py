@@ -76,18 +76,28 @@ def _of_mass(rest_mass, mu, theta_of, slope):
     return beta, family.sigma_of_theta(beta, theta_of(u))
 
 
-def at_temperature(rest_mass, mu, temperature):
+def support(density, rotation=0.0, background=0.0):
+    """What rotation and background add to the effective Gamma_1 at a central density [g cm-3]."""
+    return ROTATION_SHIFT * rotation + BACKGROUND_SHIFT * background / density
+
+
+def at_temperature(rest_mass, mu, temperature, rotation=0.0, background=0.0):
     """The Star of ``rest_mass`` [g] with central ``temperature`` [K]."""
     theta = K_B * np.asarray(temperature, float) / (mu * M_U * C**2)
     beta, sigma = _of_mass(rest_mass, mu, lambda u: theta + 0.0 * u, 0.0)
-    return family.stars(beta, sigma, mu)
+    return _supported(beta, sigma, mu, rotation, background)
 
 
-def at_density(rest_mass, mu, density):
+def _supported(beta, sigma, mu, rotation, background):
+    density = family._energy_density(beta, family.central_theta(beta, sigma))[1] * mu**4
+    return family.stars(beta, sigma, mu, support(density, rotation, background))
+
+
+def at_density(rest_mass, mu, density, rotation=0.0, background=0.0):
     """The Star of ``rest_mass`` [g] with central rest-mass ``density`` [g cm-3]: a point of the locus of equilibria."""
     scale = np.cbrt(3.0 * K_B * np.asarray(density, float) / (RADIATION * mu * M_U)) * K_B / (mu * M_U * C**2)
     beta, sigma = _of_mass(rest_mass, mu, lambda u: scale * np.exp(u / 3.0), 1.0 / 3.0)
-    return family.stars(beta, sigma, mu)
+    return family.stars(beta, sigma, mu, support(density, rotation, background))
 
 
 # ------------------------------------------------------------------------------------------------ the onset
@@ -140,7 +150,7 @@ def onset(rest_mass, mu, rotation=0.0, background=0.0):
         move_w = (mass_row[0] * value - first * row[0]) / determinant
         u, w = u - np.clip(move_u, -2.0, 2.0), w - np.clip(move_w, -2.0, 2.0)
         if max(np.max(np.abs(move_u), initial=0.0), np.max(np.abs(move_w), initial=0.0)) < _TOLERANCE:
-            return family.stars(1.0 / (1.0 + np.exp(u)), np.exp(w), mu)
+            return _supported(1.0 / (1.0 + np.exp(u)), np.exp(w), mu, rotation, background)
     raise ComputationError("no onset of collapse was found for this mass")
 
 
