@@ -132,13 +132,13 @@ class Field {
 
   typeKey(event) {
     if (event.key === "Escape") this.text.value = typedForm(this.get("number"));
-    if (event.key === "Enter") this.send("text", this.text.value), event.preventDefault();
   }
 
+  /** Assistive tools hear the value, not the position of the thumb. */
   speak(value) {
-    const unit = this.get("unit_shown");
-    this.slider.setAttribute("aria-valuenow", String(value));
-    this.slider.setAttribute("aria-valuetext", `${formatNumber(value, 6)}${unit ? " " + unit : ""}`);
+    const unit = this.get("unit_shown"), { minimum, maximum } = this.track;
+    const told = { valuemin: minimum, valuemax: maximum, valuenow: value, valuetext: formatNumber(value, 6) + (unit && ` ${unit}`) };
+    for (const [name, said] of Object.entries(told)) this.slider.setAttribute(`aria-${name}`, String(said));
   }
 
   /** Shows what Python has, except that a value on its way from here is not undone by an older answer. */
