@@ -237,9 +237,10 @@ def test_a_reader_that_leaves_is_no_failure(arguments):
 
 
 @pytest.mark.skipif(not Path("/dev/full").exists(), reason="needs the device that is always full")
-def test_a_full_disk_is_a_sentence():
+@pytest.mark.parametrize("arguments", [["evaluate", "builtin:lantern"], ["--version"]])
+def test_a_full_disk_is_a_sentence(arguments):
     with open("/dev/full", "w") as full:
-        status, _, err = finished("evaluate", "builtin:lantern", stdout=full)
+        status, _, err = finished(*arguments, stdout=full)
     assert (status, err) == (1, "massdash: No space left on device\n")
 
 
