@@ -23,6 +23,8 @@ from massdash.render.paper_text import FAMILY, LINE_HEIGHT, Ruler, printable_cha
 
 MM = 72 / 25.4  # points
 DPI = 300
+INWARD = ((0, TICKUP, TICKRIGHT), (1, TICKDOWN, TICKLEFT))  # minor ticks: edge, marker along x, marker along y
+OUTWARD = ((0, TICKDOWN, TICKLEFT),)
 LOOK = {
     "font.family": FAMILY,
     "mathtext.fontset": "dejavusans",
@@ -77,6 +79,7 @@ class Sheet:
         self.figure.set_size_inches(width / 72, self.layout.height / 72)
         self.points = Affine2D().scale(1 / 72) + self.figure.dpi_scale_trans
         self.keyed = keyed
+        self.over_map = bool(chart.of(Map))  # then ticks stand outside, where they can be seen
 
     def draw(self):
         """Draw everything; returns the keys of marks whose labels found no place."""
@@ -104,17 +107,19 @@ class Sheet:
         place = [left / page.width, page.bottom / page.height, width / page.width, page.axes_height / page.height]
         axes = self.figure.add_axes(place)
         axes.set(xlim=(0, 1), ylim=(0, 1))
-        axes.tick_params(direction="in", length=TICK, width=0.6, color=INK, labelsize=self.ruler.small, labelcolor=INK)
+        direction, length = ("out", 2 * TICK / 3) if self.over_map else ("in", TICK)
+        axes.tick_params(direction=direction, length=length, width=0.6, color=INK)
+        axes.tick_params(labelsize=self.ruler.small, labelcolor=INK)
         axes.set_axisbelow(False)
         return axes
 
     def _axis_texts(self, axes):
         page, size = self.layout, self.ruler.font_size
-        self._ticks(axes.xaxis, page.x, top=True)
-        self._ticks(axes.yaxis, page.y, right=page.bar is None)
-        for at, ends in ((0, (TICKUP, TICKRIGHT)), (1, (TICKDOWN, TICKLEFT))):
-            self._minor_ticks(axes, page.x.ticks.minor, [at] * len(page.x.ticks.minor), ends[0])
-            self._minor_ticks(axes, [at] * len(page.y.ticks.minor), page.y.ticks.minor, ends[1])
+        self._ticks(axes.xaxis, page.x, top=not self.over_map)
+        self._ticks(axes.yaxis, page.y, right=not self.over_map)
+        for edge, along_x, along_y in OUTWARD if self.over_map else INWARD:
+            self._minor_ticks(axes, page.x.ticks.minor, [edge] * len(page.x.ticks.minor), along_x)
+            self._minor_ticks(axes, [edge] * len(page.y.ticks.minor), page.y.ticks.minor, along_y)
         middle = page.left + page.axes_width / 2
         self.text(middle, page.bottom - page.x.depth, page.x.title, size, ha="center", va="bottom", ma="center")
         upright = {"rotation": 90, "ha": "left", "va": "center", "ma": "center"}
@@ -123,7 +128,7 @@ class Sheet:
     def _ticks(self, axis, side, **opposite):
         ticks = side.ticks
         axis.set_ticks(ticks.at, ticks.texts)
-        axis.set_tick_params(pad=TICK, **opposite)
+        axis.set_tick_params(pad=self._pad(), **opposite)
         for label in axis.get_ticklabels():
             label.set(rotation=ticks.rotation, ma="center", linespacing=LINE_HEIGHT)
             if axis.axis_name == "y":
@@ -131,14 +136,18 @@ class Sheet:
         if axis.axis_name == "x" and not ticks.rotation and not any("\n" in text for text in ticks.texts):
             self._one_baseline(axis, side)
 
+    def _pad(self):
+        """Room between a tick's end and its label."""
+        return TICK / 3 if self.over_map else TICK
+
     def _minor_ticks(self, axes, x, y, marker):
         """One artist for all of them: matplotlib's own take longer than the rest of the figure."""
-        look = {"markersize": 0.6 * TICK, "markeredgewidth": 0.4, "color": INK, "zorder": 2.5}
+        look = {"markersize": 0.6 * TICK, "markeredgewidth": 0.4, "color": INK, "zorder": 2.5, "clip_on": False}
         axes.plot(x, y, linestyle="none", marker=marker, **look)
 
     def _one_baseline(self, axis, side):
         """Powers and plain numbers stand on one line."""
-        axis.set_tick_params(pad=TICK + side.label_depth - 0.25 * self.ruler.small)
+        axis.set_tick_params(pad=self._pad() + side.label_depth - 0.25 * self.ruler.small)
         for label in axis.get_ticklabels():
             label.set_verticalalignment("baseline")
 

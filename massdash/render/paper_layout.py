@@ -19,7 +19,7 @@ from massdash.render.paper_scale import Ticks, axis_title, number_text, plain
 EDGE = 2.0  # free rim of the page
 SLACK = 0.97  # for letters that another renderer draws a little wider
 GAP = 3.0
-TICK = 3.0
+TICK = 3.0  # between the axes and their labels; ticks go inwards, or outwards by two thirds of it
 BAR = 8.0  # width of a colour bar
 LEADER = 9.0  # room for the lines from curve ends to their labels
 MARGIN_SHARE = 0.22  # of the page's width that line labels may take

@@ -23,7 +23,7 @@ class Names:
         self.sheet, self.page, self.scales = sheet, sheet.layout, sheet.scales
         self.places = Places(self.page.axes_width, self.page.axes_height)
         self.marks = [mark for mark in sheet.chart.marks if paper_marks.is_on(mark, self.scales)]
-        self.over_map = bool(sheet.chart.of(Map))
+        self.over_map = sheet.over_map
         for mark in self.marks:
             self._occupy(mark)
 
