@@ -11,15 +11,16 @@ from massdash.charts.chart import Band, Line, Map, Point, Rule
 
 MARGIN = 0.04  # of the data's range, left free on both sides
 LEAST = 1e-12  # narrowest axis, relative to its larger end: float64 resolves no finer steps
-LARGEST, SMALLEST = 9e307, 2e-307  # double precision ends at 1.8e308 and has all its digits down to 2.2e-308
+# Double precision ends at 1.8e308 and has all its digits down to 2.2e-308; an axis needs room for its length.
+LARGEST, SMALLEST = 8e307, 2e-307
 
 
 def forward(values, axis):
     """Scale coordinates (float64, shape of ``values``); NaN where the scale shows nothing."""
     values = np.asarray(values, float)
+    values = np.where(np.abs(values) <= LARGEST, values, np.nan)
     if axis.scale == "log":
-        shown = np.where(values > 0, values, np.nan)
-        coordinates = np.log10(shown)
+        coordinates = np.log10(np.where(values >= SMALLEST, values, np.nan))
     elif axis.scale == "symlog":
         coordinates = np.arcsinh(values / (2 * axis.linear_width)) / np.log(10)
     else:

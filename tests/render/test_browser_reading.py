@@ -1,6 +1,7 @@
 """What hovering, zooming and walking with the keys show, in a real browser."""
 
 import re
+from dataclasses import replace
 
 import numpy as np
 import pytest
@@ -112,3 +113,14 @@ def test_a_curve_outside_the_view_is_still_named(plot):
     plot.page.mouse.up()
     plot.painted()
     assert "falling (outside the view)" in plot.page.locator("[data-chart=curves] .massdash-legend").inner_text()
+
+
+def test_a_map_is_prepared_anew_exactly_when_it_changes(plot, field):
+    image = "view.prepared.image"
+    plot.page.evaluate(f"window.first = views[1].{image.removeprefix('view.')}; undefined")
+    show(plot.page, [curves(), plane()], number=2, exact=True)
+    assert field.view(f"{image} === first")
+    changed = plane().marks[0]
+    changed = replace(changed, values=np.where(changed.values > 0.99, 0.0, changed.values))
+    show(plot.page, [curves(), replace(plane(), marks=(changed,))], number=3, exact=True)
+    assert not field.view(f"{image} === first")

@@ -70,7 +70,7 @@ class ChartView {
     this.map = this.marks.find((mark) => mark.kind === "map") || null;
     if (this.map) {
       this.scales.z.setMoment(moment.marks[this.marks.indexOf(this.map)].axis);
-      this.prepared = prepareMap(this.map, this.scales.z);
+      if (!stillPrepared(this.prepared, this.map, this.scales.z)) this.prepared = prepareMap(this.map, this.scales.z);
     }
     if (this.heading.textContent !== moment.title) this.heading.textContent = moment.title;
     this.describe(moment);

@@ -49,7 +49,7 @@ function layOut(view, width, height) {
   const left = stepped(AXIS_TITLE + 2 + widest(tickTexts(yTicks)) + TICK_GAP);
   const right = stepped(rightMargin(view, width, labels, barTicks));
   const box = { left, top: MARGIN_TOP, width: Math.max(40, width - left - right), height: plotHeight };
-  const count = Math.max(2, Math.floor(box.width / 75));
+  const count = Math.max(2, Math.floor(box.width / 60));
   const xTicks = thinned(axisTicks(x, count), box.width, textWidth, 8);
   return { box, xTicks, yTicks, barTicks, labels };
 }

@@ -36,7 +36,7 @@ const CROSSINGS = [
     the centre of the first. A square that touches a missing value has no line. */
 function contourPieces(values, [columns, rows], level, isMissing) {
   const pieces = [];
-  const corner = [0, 0, 0, 0];
+  let corner;
   const part = (a, b) => (level - corner[a]) / (corner[b] - corner[a]);
   const edge = [
     (i, j) => [i + part(0, 1), j], (i, j) => [i + 1, j + part(1, 2)],
@@ -45,10 +45,11 @@ function contourPieces(values, [columns, rows], level, isMissing) {
   for (let j = 0; j < rows - 1; j++) {
     for (let i = 0; i < columns - 1; i++) {
       const at = j * columns + i;
-      corner[0] = values[at], corner[1] = values[at + 1];
-      corner[3] = values[at + columns], corner[2] = values[at + columns + 1];
-      const above = (corner[0] > level) | ((corner[1] > level) << 1) | ((corner[2] > level) << 2) | ((corner[3] > level) << 3);
-      if (above === 0 || above === 15 || corner.some(isMissing)) continue;
+      const above = (values[at] > level) | ((values[at + 1] > level) << 1)
+        | ((values[at + columns + 1] > level) << 2) | ((values[at + columns] > level) << 3);
+      if (above === 0 || above === 15) continue;
+      corner = [values[at], values[at + 1], values[at + columns + 1], values[at + columns]];
+      if (corner.some(isMissing)) continue;
       for (const [from, to] of CROSSINGS[above]) pieces.push(...edge[from](i, j), ...edge[to](i, j));
     }
   }
@@ -62,14 +63,24 @@ function levelInValues(mark, scale, level) {
   return 1 + (254 * (t - scale.home[0])) / (scale.home[1] - scale.home[0]);
 }
 
-/** Image and contour lines of a map, made once per frame. */
+const sameNumbers = (one, other) => one.length === other.length && one.every((value, i) => Object.is(value, other[i]));
+
+/** All that the picture of a map depends on besides its values. */
+const recipe = ({ shape, levels, palette, values }, { home, width }) =>
+  JSON.stringify([shape, levels, palette, values.constructor.name, home, width]);
+
+/** Whether what was prepared for a map still stands: often only the star moves over it. */
+const stillPrepared = (prepared, mark, scale) =>
+  prepared?.recipe === recipe(mark, scale) && sameNumbers(prepared.values, mark.values);
+
+/** Image and contour lines of a map, made when it changes. */
 function prepareMap(mark, scale) {
   const isMissing = mark.values instanceof Uint8Array ? (v) => v === 0 : (v) => !Number.isFinite(v);
   const lines = mark.levels.map((level) => ({
     level,
     pieces: contourPieces(mark.values, mark.shape, levelInValues(mark, scale, level), isMissing),
   }));
-  return { image: colourImage(mark, scale.home), lines };
+  return { recipe: recipe(mark, scale), values: mark.values, image: colourImage(mark, scale.home), lines };
 }
 
 function paintMap(picture, mark) {
@@ -120,6 +131,8 @@ function labelContour(picture, pieces, X, Y, level) {
   }
   const visible = places.filter(([x, y]) => isInside(x, y, picture.edges));
   if (!visible.length) return;
+  const { box } = picture, off = ([x, y]) => Math.hypot(x - box.left - box.width / 2, y - box.top - box.height / 2);
+  visible.sort((one, other) => off(one) - off(other));
   const text = formatNumber(level, 3);
   const written = picture.texts.put(text, visible, { colour: "#000", paper: "#fff", within: picture.edges });
   if (!written) picture.legend.push({ text: `contour ${text}`, colour: picture.theme.text, dash: null });

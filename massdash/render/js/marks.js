@@ -134,7 +134,7 @@ function drawPoint(picture, mark) {
   if (outside) drawShape(picture, "outside", x, y, Math.atan2(-(fy - clampFraction(fy)), fx - clampFraction(fx)));
   else drawShape(picture, mark.shape, x, y, 0);
   picture.texts.reserve(x, y, 6);
-  picture.later.push(() => picture.label(mark.label, aroundPoint(x, y), theme.text));
+  picture.later.push(() => picture.label(mark.label, aroundPoint(x, y), theme.text, { anchor: [x, y] }));
 }
 
 const clampFraction = (fraction) => Math.max(0, Math.min(1, fraction));

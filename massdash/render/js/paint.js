@@ -29,13 +29,20 @@ class Picture {
     this.context.stroke();
   }
 
-  /** A text on the plot; what finds no place goes to the legend line under the title. */
-  label(text, places, ink, options = {}) {
+  /** A text on the plot, with a thin leader to its ``anchor`` [x, y] when it had to stand far off; what finds no place
+      goes to the legend line under the title. */
+  label(text, places, ink, { dash = null, anchor = null } = {}) {
     if (!text) return;
-    const within = options.within || this.edges;
-    if (!this.texts.put(text, places, { colour: ink, paper: this.theme.paper, ...options, within })) {
-      this.legend.push({ text, colour: ink, dash: options.dash || null });
-    }
+    const box = this.texts.put(text, places, { colour: ink, paper: this.theme.paper, within: this.edges });
+    if (!box) this.legend.push({ text, colour: ink, dash });
+    else if (anchor) this.leader(anchor, box);
+  }
+
+  leader([x, y], [left, top, right, bottom]) {
+    const end = [Math.max(left, Math.min(right, x)), Math.max(top + 2, Math.min(bottom - 2, y))];
+    const length = Math.hypot(end[0] - x, end[1] - y), start = 8 / length;
+    if (length < 16) return;
+    strokeLines(this, [[x + start * (end[0] - x), y + start * (end[1] - y), ...end]], this.theme.text, 0.8);
   }
 }
 

@@ -30,7 +30,7 @@ class Scale {
   /** Whether doubles hold and resolve a range; an axis that reached further would have ticks at infinity. */
   acceptable(start, end) {
     const far = Math.max(Math.abs(start), Math.abs(end)), values = [this.inverse(start), this.inverse(end)];
-    const held = values.every((value) => Math.abs(value) < 1e308) && (this.scale !== "log" || values.every((v) => v > 1e-307));
+    const held = values.every((value) => Math.abs(value) < 8.5e307) && (this.scale !== "log" || values.every((v) => v > 1e-307));
     return held && Math.abs(end - start) > NARROWEST * far;
   }
 

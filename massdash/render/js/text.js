@@ -71,8 +71,8 @@ class Texts {
     return inside(box, this.canvas) && !this.boxes.some((other) => overlap(box, other, 4));
   }
 
-  /** Writes at the best of some places [x, y, align]; earlier ones win ties. False when none is free. */
-  put(text, places, { colour, paper, within = this.canvas, tolerance = Infinity }) {
+  /** Writes at the best of some places [x, y, align]; earlier ones win ties. The box written in, or null. */
+  put(text, places, { colour, paper, within = this.canvas }) {
     let best = null, least = Infinity;
     places.forEach(([x, y, align = "left"], rank) => {
       const box = this.box(text, x, y, align);
@@ -80,9 +80,8 @@ class Texts {
       const cost = this.crowd.under(box) + 0.5 * rank;
       if (cost < least) [best, least] = [box, cost];
     });
-    if (!best || least > tolerance) return false;
-    this.write(text, best, colour, paper);
-    return true;
+    if (best) this.write(text, best, colour, paper);
+    return best;
   }
 
   write(text, box, colour, paper) {
