@@ -54,9 +54,14 @@ class Controls:
         try:
             for name, control in self.fields.items():
                 control.value = scenario.number(name)
-                control.message = ""
         finally:
             self._showing = False
+        self.quiet()
+
+    def quiet(self):
+        """Take back all messages."""
+        for control in self.fields.values():
+            control.message = ""
 
     def refuse(self, name, sentence, scenario):
         """Put a field back to the scenario's value and say why beside it."""

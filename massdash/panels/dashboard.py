@@ -15,7 +15,7 @@ from massdash.panels.controls import SHOWN, Controls
 from massdash.panels.filing import Filing, choices
 from massdash.panels.later import Later
 from massdash.render.live import LiveCharts
-from massdash.scenario import DEFAULT_NAME, FIELDS, builtin
+from massdash.scenario import FIELDS
 
 #: The environment variable in which ``massdash dashboard FILE...`` hands over the files, as a JSON list.
 OPEN = "MASSDASH_OPEN"
@@ -88,6 +88,7 @@ class Dashboard:
         except MassdashError as error:
             self.controls.refuse(name, str(error), self.scenario)
             return
+        self.controls.quiet()
         self.status.value = ""
         if not self.controls.dragging:
             self._later.soon()
@@ -161,8 +162,4 @@ def dashboard(files=None):
     Without ``files`` those named on the command line are taken. Raises InputError for a file that is no scenario.
     """
     named = json.loads(os.environ.get(OPEN, "[]")) if files is None else list(files)
-    offered = choices(named)
-    if not named:
-        first = builtin(DEFAULT_NAME)
-        offered.sort(key=lambda choice: choice[1] != first)  # stable: only the default one moves to the front
-    return Dashboard(offered).widget
+    return Dashboard(choices(named)).widget

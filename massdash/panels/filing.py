@@ -7,7 +7,7 @@ import ipywidgets
 from massdash.charts import CHARTS
 from massdash.errors import MassdashError
 from massdash.render.download import Download
-from massdash.scenario import builtin, builtin_names, from_bytes, load, to_text
+from massdash.scenario import DEFAULT_NAME, builtin, builtin_names, from_bytes, load, to_text
 
 FORMATS = {"PDF": "pdf", "SVG": "svg", "PNG": "png", "data (ECSV)": "ecsv"}
 WIDTHS = {"single column": "single", "double column": "double"}
@@ -21,9 +21,10 @@ def slug(label):
 
 
 def choices(files):
-    """(shown text, scenario) for the files a session was opened with, then for the built-in ones."""
+    """(shown text, scenario) for the files a session was opened with, then for the built-in ones, the default first."""
     opened = [(f"{scenario.label} (opened file)", scenario) for scenario in map(load, files)]
-    return opened + [(f"{scenario.label} (built in)", scenario) for scenario in map(builtin, builtin_names())]
+    names = sorted(builtin_names(), key=lambda name: name != DEFAULT_NAME)
+    return opened + [(f"{scenario.label} (built in)", scenario) for scenario in map(builtin, names)]
 
 
 class Filing:
@@ -73,8 +74,8 @@ class Filing:
         return f"Saved {name}."
 
     def _export(self):
-        from massdash.provenance import provenance
-        from massdash.render.paper import WIDTHS as MILLIMETRES
+        from massdash.render.export import WIDTHS as MILLIMETRES
+        from massdash.render.export import figure_bytes, provenance
 
         key, ending = self.figure.value, self.format.value
         chart, about = self._chart(key), provenance(self._outcome())
@@ -83,8 +84,6 @@ class Filing:
 
             data = ecsv_bytes(chart, about)
         else:
-            from massdash.render.export import figure_bytes
-
             data = figure_bytes(chart, ending, width_mm=MILLIMETRES[self.width.value], provenance=about)
         name = f"{slug(self._outcome().scenario.label)}_{key}.{ending}"
         self.download.offer(name, data, _MIME[ending])
