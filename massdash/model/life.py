@@ -3,7 +3,6 @@
 from dataclasses import dataclass
 
 from massdash.constants import L_SUN, M_SUN, YEAR
-from massdash.errors import ComputationError
 from massdash.model import words
 from massdash.physics import opacity
 from massdash.physics.composition import hydrogen_of_weight
@@ -53,10 +52,7 @@ def _times(matter, stability, state, luminosity):
     contraction = float(contraction_time(state.energy, luminosity)) if state.energy < 0 else None
     if not stability.settles or matter.hydrogen <= EXHAUSTED:
         return Life(contraction, None, None, not stability.settles)
-    try:
-        turn = float(hydrogen_at_onset(body, stability.ignition, matter.metals))
-    except ComputationError:
-        turn = -1.0  # no mean molecular weight, however large, brings this star to its onset
+    turn = float(hydrogen_at_onset(body, stability.ignition, matter.metals))
     end = min(max(turn, EXHAUSTED), matter.hydrogen)
     burning = float(mixed_burning_time(matter.hydrogen, end, state.beta))
     return Life(contraction, burning, end, turn > EXHAUSTED)

@@ -2,7 +2,7 @@
 
 Density follows rho_c theta^3 and the entropy is uniform, so that the ratio of radiation to gas pressure varies a
 little from centre to surface. The averages that the energy of such a star needs depend on one number only, beta_c at
-the centre, and are kept as Chebyshev series in beta_c over 0..0.8 (error below 1e-9 of each, held by a test); beyond,
+the centre, and are kept as polynomials in beta_c over 0..0.8 (error below 1e-9 of each, held by a test); beyond,
 which is below 30 solar masses, they are summed directly.
 """
 
@@ -36,11 +36,16 @@ def averages_by_nodes(beta):
 
 @cache
 def _series():
-    """Chebyshev coefficients (DEGREE + 1, 3) of work, gas/beta and excess/beta over beta_c in 0..TOP."""
+    """Coefficients (DEGREE + 1, 3) of work, gas/beta and excess/beta as polynomials in x = 2 beta_c/TOP - 1.
+
+    Found as Chebyshev series and written out in powers of x: their coefficients fall so fast that none of the powers'
+    exceeds about one, so nothing is lost, and powers need one product of matrices where the series needs a loop.
+    """
     nodes = chebyshev.chebpts1(DEGREE + 1)
     beta = TOP * (nodes + 1.0) / 2.0
     work, gas, excess = averages_by_nodes(beta)
-    return chebyshev.chebfit(nodes, np.stack([work, gas / beta, excess / beta], axis=-1), DEGREE)
+    columns = chebyshev.chebfit(nodes, np.stack([work, gas / beta, excess / beta], axis=-1), DEGREE).T
+    return np.stack([chebyshev.cheb2poly(column) for column in columns], axis=-1)
 
 
 def averages(beta):
@@ -48,5 +53,8 @@ def averages(beta):
     beta = np.asarray(beta, float)
     if np.any(beta > TOP):
         return averages_by_nodes(beta)
-    work, gas, excess = chebyshev.chebval(2.0 * beta / TOP - 1.0, _series())
-    return work, gas * beta, excess * beta
+    powers = np.ones((*beta.shape, DEGREE + 1))
+    powers[..., 1:] = (2.0 * beta / TOP - 1.0)[..., None]
+    np.multiply.accumulate(powers, axis=-1, out=powers)
+    found = powers @ _series()
+    return found[..., 0], found[..., 1] * beta, found[..., 2] * beta

@@ -3,7 +3,7 @@
 Two roads: closed forms at leading order in beta (names ending in ``_leading``), and the energy functional with exact
 beta and Gamma_1. Both are the conditions dE/dy = d2E/dy2 = 0 of ``post_newtonian``; at leading order they read
 
-    k2 (T/|W| + beta/4 + 6 kb/k2 rho_b/rho_c) = y (k4 + 3 k5 y),        beta^2 = C/(mu^2 M).
+    k2 (T/|W| + beta/4 + 3 kb/k2 rho_b/rho_c) = y (k4 + 3 k5 y),        beta^2 = C/(mu^2 M).
 """
 
 import numpy as np
@@ -36,12 +36,17 @@ def leading_beta(mass, mu):
     return np.sqrt(EDDINGTON_MASS * M_SUN / mass) / mu
 
 
+def _lift(body):
+    """What the background adds to y (k4 + 3 k5 y) at onset, times y^3; a constant, as rho_b/rho_c goes as y^-3."""
+    return 3.0 * K_BACKGROUND * body.background * body.mass**2 * (G / C**2) ** 3
+
+
 def _leading_y(body):
     """Root of the leading-order condition; positive and single, since the polynomial changes sign once."""
     floor = K2 * (body.rotation + leading_beta(body.mass, body.mu) / 4.0)
-    if not (np.any(body.background) or body.second_order):
-        return floor / K4
-    lift = 6.0 * K_BACKGROUND * body.background * body.mass**2 * (G / C**2) ** 3
+    if not np.any(body.background):
+        return 2.0 * floor / (K4 + np.sqrt(K4**2 + 12.0 * body.k5 * floor))
+    lift = _lift(body)
 
     def residual(u):
         y = np.exp(u)
@@ -82,7 +87,7 @@ def _marginal_y(body, excess):
     start = (1.5 * excess * (1.0 - 2.0 * body.rotation) + body.rotation) * K2 / (K4 * (1.0 - 3.0 * excess))
     if not (np.any(body.background) or body.second_order):
         return start
-    return np.exp(secant(residual, np.log(start), what="onset of instability"))
+    return np.exp(secant(residual, np.log(start + (_lift(body) / K4) ** 0.25), what="onset of instability"))
 
 
 def onset(body):
@@ -144,26 +149,41 @@ def maximum_mass(mu, temperature, rotation=0.0, background=0.0, second_order=Fal
 def weight_for(mass, temperature, rotation=0.0, background=0.0):
     """Mean molecular weight at which the star of ``mass`` [g] meets onset at just ``temperature`` [K].
 
-    Given z = P_rad/P_gas, marginal stability gives y and balance the pressure; the temperature then follows from the
-    pressure with one weight and from the density with another, and z is where the two agree. Shapes broadcast.
+    The temperature gives the radiation's pressure. With z = P_rad/P_gas follow the pressure and, from balance, y; z is
+    where relativity takes just what <Gamma_1> - 4/3 and the helpers give. Infinite where rotation or background alone
+    keep a star of any weight from its onset at this temperature. Shapes broadcast.
     """
     body = Body(mass, 1.0, rotation, background)
-    guess = EDDINGTON_MASS * M_SUN / mass * K2 / (4.0 * K4) * M_U * C**2 / (K_B * np.asarray(temperature, float))
-    beta = leading_beta(mass, guess)
+    temperature = np.asarray(temperature, float)
 
-    def weights(u):
-        z = np.exp(u)
-        work, _, excess = averages(1.0 / (1.0 + z))
-        y = _marginal_y(body, excess)
-        from_pressure = 3.0 * work * K_B * temperature * (1.0 + z) / (M_U * C**2 * body.pull(y))
-        from_density = body.density(y) / eos.density(temperature, 1.0 / (1.0 + z), 1.0)
-        return from_pressure, from_density
+    def wanted(work, radiation_share):
+        y = _y_at_pressure(body, work, RADIATION / 3.0 * temperature**4 / radiation_share)
+        return y, (relativity(y) - help_from_outside(y, rotation, background / body.density(y))) / (3.0 * body.pull(y))
+
+    least = wanted(averages(0.0)[0], 1.0)[1]  # <Gamma_1> - 4/3 that would do for a star of pure radiation
+    exists = least > 0.0
+    start = np.log(1.0 / np.where(exists, 6.0 * least, 1.0))
 
     def residual(u):
-        from_pressure, from_density = weights(u)
-        return np.log(from_pressure / from_density)
+        z = np.exp(u)
+        work, _, excess = averages(1.0 / (1.0 + z))
+        return np.log(np.where(exists, wanted(work, z / (1.0 + z))[1], excess) / excess)
 
-    return weights(secant(residual, np.log1p(1.0 / beta), what="mean molecular weight"))[0]
+    z = np.exp(secant(residual, start, what="mean molecular weight"))
+    y = wanted(averages(1.0 / (1.0 + z))[0], z / (1.0 + z))[0]
+    return np.where(exists, body.density(y) / eos.density(temperature, 1.0 / (1.0 + z), 1.0), np.inf)
+
+
+def _y_at_pressure(body, work, pressure):
+    """y of the configuration in balance at a central pressure [dyn cm-2]; ``work`` as ``averages`` gives it."""
+    goal = np.log(3.0 * work * pressure)
+
+    def residual(u):
+        y = np.exp(u)
+        return np.log(body.pull(y) * body.density(y) * C**2) - goal
+
+    start = 0.25 * (goal - np.log(K2 * body.density(1.0) * C**2))
+    return np.exp(secant(residual, start, what="balance at given pressure"))
 
 
 def rotation_for(mass, mu, temperature):

@@ -15,10 +15,11 @@ def secant(residual, start, *, what, step=1e-4, tolerance=1e-13, most=60):
     u1 = u0 + step
     r0, r1 = residual(u0), residual(u1)
     for _ in range(most):
-        slope = np.where(r1 == r0, 1.0, r1 - r0) / np.where(u1 == u0, 1.0, u1 - u0)
-        move = np.clip(-r1 / slope, -2.0, 2.0)
+        change = r1 - r0
+        move = -r1 * (u1 - u0) / (change + (change == 0.0))
+        move = np.minimum(np.maximum(move, -2.0), 2.0)
         u0, r0, u1 = u1, r1, u1 + move
-        if np.all(np.abs(move) <= tolerance * np.maximum(1.0, np.abs(u1))):
+        if (np.abs(move) <= tolerance * np.maximum(1.0, np.abs(u1))).all():
             return u1
         r1 = residual(u1)
     raise ComputationError(f"{what}: no answer found for this star")
