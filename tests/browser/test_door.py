@@ -71,7 +71,7 @@ def test_nothing_is_listed(standin, name):
     assert "kernel" not in text
 
 
-@pytest.mark.parametrize("name", ["standin.ipynb", "serve.py", "../conftest.py", "shot.png"])
+@pytest.mark.parametrize("name", ["standin.ipynb", "serve.py", "../conftest.py", "picture.svg"])
 def test_no_file_is_served(standin, name):
     assert standin.ask(f"/voila/files/{name}", token=standin.token)[0] in (403, 404)
 
@@ -79,7 +79,7 @@ def test_no_file_is_served(standin, name):
 def test_sources_are_not_told(standin):
     text = standin.ask("/", token=standin.token)[2]
     assert "Stand-in" in text
-    assert "slider.observe" not in text
+    assert "setattr" not in text
 
 
 def test_the_template_cannot_be_chosen_from_outside(standin):
