@@ -10,6 +10,17 @@ from .errors import InputError, refuse
 PACKAGE = Path(__file__).resolve().parent
 FILES_VARIABLE = "MASSDASH_OPEN"
 
+# What a kernel does before its page asks for anything, so that the page finds all that is slow the first time done.
+WARM_UP = "; ".join(
+    [
+        "import massdash.panels",
+        "from massdash import evaluate",
+        "from massdash.charts import all_charts",
+        "from massdash.scenario import DEFAULT_NAME, builtin",
+        "all_charts(evaluate(builtin(DEFAULT_NAME)))",
+    ]
+)
+
 
 def run_dashboard(files=(), *, port=None, open_browser=True):
     """Serve the dashboard to this machine alone until Ctrl-C; print its address on stdout.
@@ -28,7 +39,7 @@ def run_dashboard(files=(), *, port=None, open_browser=True):
         dashboard_notebook(),
         sockets,
         environment=kernel_environment(paths),
-        first_line="import massdash.panels",
+        first_line=WARM_UP,
         open_browser=open_browser and has_screen(),
     )
     return 0
