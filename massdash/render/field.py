@@ -26,6 +26,13 @@ def read_number(text):
     return float(text) if len(text) <= LONGEST and NUMBER.fullmatch(text) else None
 
 
+def middle(minimum, maximum, scale):
+    """A number in the middle of a range, in two digits where the range allows that."""
+    exact = math.sqrt(minimum) * math.sqrt(maximum) if scale == "log" else (minimum + maximum) / 2
+    rounded = float(f"{exact:.2g}")
+    return rounded if minimum <= rounded <= maximum else exact
+
+
 class Allowed(traitlets.Float):
     """A float, or None, that its widget allows; traitlets' own checks let None pass unseen."""
 
@@ -72,8 +79,8 @@ class NumberField(anywidget.AnyWidget):
         if scale == "log" and not minimum > 0:
             raise ValueError(f"{label}: a logarithmic scale needs a minimum above 0, got {minimum}")
         value = traits.pop("value", default)
-        middle = math.sqrt(minimum) * math.sqrt(maximum) if scale == "log" else (minimum + maximum) / 2
-        number = next(number for number in (value, default, middle) if number is not None)
+        starts = (value, default, middle(minimum, maximum, scale))
+        number = next(number for number in starts if number is not None)
         bounds = {"label": label, "minimum": minimum, "maximum": maximum, "default": default}
         super().__init__(**bounds, **traits, number=number, value=value)  # the value last: it is held to the others
         self.observe(self._receive, "entry")

@@ -7,7 +7,9 @@ from pathlib import Path
 import numpy as np
 import pytest
 from bare import HANG, open_charts, show
-from hard_cases import hard_cases
+from hard_cases import X, hard_cases, one
+
+from massdash.charts.chart import Axis, Chart
 
 pytestmark = pytest.mark.browser
 CASES = hard_cases()
@@ -58,9 +60,27 @@ def test_each_axis_has_a_readable_number_of_labels(facts, key):
 @each_case
 def test_labels_do_not_touch(facts, key):
     for name in "xy":
-        ticks = labels(facts[key][name])
-        for one, other in itertools.pairwise(ticks):
-            assert one["pixel"] + one["half"] < other["pixel"] - other["half"]
+        assert_apart(labels(facts[key][name]))
+
+
+def test_long_labels_in_a_narrow_chart_are_thinned(page):
+    ticks = tuple((float(10 * i), f"a rather long name {i}") for i in range(11))
+    page.set_viewport_size({"width": 420, "height": 600})
+    open_charts(
+        page,
+        [
+            one("long", "long", X, ticks=ticks),
+            Chart("named", "", Axis("x", ticks=ticks), Axis("y"), CASES["gaps"].marks),
+        ],
+    )
+    found = page.evaluate(FACTS)[1]["x"]
+    assert 1 <= len(labels(found)) < 11
+    assert_apart(labels(found))
+
+
+def assert_apart(ticks):
+    for one_tick, other in itertools.pairwise(ticks):
+        assert one_tick["pixel"] + one_tick["half"] < other["pixel"] - other["half"]
 
 
 @each_case

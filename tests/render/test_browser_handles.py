@@ -80,6 +80,7 @@ def test_a_dragged_rule_follows_at_once_and_python_hears_it(plot):
 
 def test_a_handle_stays_in_the_plot(plot):
     plot.drag((0.4, 0.7), (1.4, 1.9))
+    assert plot.view("view.held({ handle: 'mass' }).x") == 10
     plot.page.mouse.up()
     assert (plot.sent()[-1]["x"], plot.sent()[-1]["y"]) == (10, 100)
 

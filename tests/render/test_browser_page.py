@@ -4,7 +4,7 @@ import re
 
 import numpy as np
 import pytest
-from bare import open_charts, show
+from bare import message, open_charts, show
 from plots import CELLS, X, curves, plane
 
 from massdash.charts.chart import Axis, Band, Chart, Line, Map, Point, Rule, Span
@@ -14,8 +14,9 @@ pytestmark = pytest.mark.browser
 
 def test_an_older_frame_never_replaces_a_newer_one(plot):
     show(plot.page, [curves(6.0, title="new"), plane()], number=5)
-    show_old = "model.fromPython({ frame: { ...model.get('frame'), number: 4, charts: [] } })"
-    plot.page.evaluate(show_old)
+    plot.page.evaluate(
+        "(old) => model.fromPython({ frame: withBuffer(JSON.parse(old)) })", message([curves(), plane()], number=4)
+    )
     plot.painted()
     assert plot.page.locator(".massdash-heading").first.inner_text() == "new"
     assert plot.page.locator(".massdash-charts").get_attribute("data-frame") == "5"

@@ -7,7 +7,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from massdash.errors import InputError
-from massdash.render.field import NumberField, read_number
+from massdash.render.field import NumberField, middle, read_number
 
 
 def mass(**changes):
@@ -50,6 +50,14 @@ def test_it_starts_with_the_default():
     assert mass().value == mass().number == 1e5
     assert found(default=None).value is None
     assert found(default=None).number == pytest.approx(1e5)  # the middle of the range, until there is a better one
+
+
+@pytest.mark.parametrize(
+    ("bounds", "expected"),
+    [((1e6, 1e9, "log"), 3.2e7), ((0.0, 1.0, "linear"), 0.5), ((1.001, 1.002, "linear"), 1.0015)],
+)
+def test_the_middle_is_a_round_number_inside_the_range(bounds, expected):
+    assert middle(*bounds) == pytest.approx(expected, rel=1e-12)
 
 
 @pytest.mark.parametrize(("kind", "value"), [("number", 2e6), ("text", "2.0E6"), ("number", 2_000_000)])

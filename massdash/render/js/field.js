@@ -63,14 +63,14 @@ class Field {
     this.text = make("input", "massdash-field-text", head, { id: `${id}-text`, type: "text", inputmode: "decimal", autocomplete: "off",
       spellcheck: "false", maxlength: "40", "aria-describedby": described });
     this.unit = make("span", "massdash-field-unit", head);
-    this.reset = make("button", "massdash-field-reset", head, { type: "button" });
-    this.reset.textContent = "reset";
     this.slider = make("input", "massdash-field-slider", this.root, { type: "range", min: "0", step: "any", "aria-describedby": described });
     const foot = make("div", "massdash-field-foot", this.root);
     this.choice = make("label", "massdash-field-choice", foot);
     this.none = make("input", "massdash-field-none", this.choice, { type: "checkbox" });
     this.noneText = make("span", "", this.choice);
     this.range = make("span", "massdash-field-range", foot, { id: `${id}-range` });
+    this.reset = make("button", "massdash-field-reset", foot, { type: "button" });
+    this.reset.textContent = "reset";
     this.help = make("div", "massdash-field-help", this.root);
     this.message = make("div", "massdash-field-message", this.root, { id: `${id}-message`, role: "status", "aria-live": "polite" });
   }
