@@ -17,8 +17,15 @@ from dataclasses import dataclass
 import numpy as np
 from scipy.special import wrightomega
 
-from massdash.errors import ComputationError
+from massdash.errors import ComputationError, refuse
 from massdash.physics.eos import adiabatic_index_excess
+
+
+def demand(name, value, good, allowed):
+    """Raise InputError for the first value that is not ``good`` (positively, so that NaN is not)."""
+    good = np.asarray(good)
+    if not np.all(good):
+        raise refuse(name, f"{np.broadcast_to(value, good.shape)[~good].flat[0]:.6g}", allowed)
 
 
 @dataclass(frozen=True, eq=False)
@@ -47,6 +54,12 @@ class Isentrope:
     beta: np.ndarray
     sigma: np.ndarray
     order: float = 4.0
+
+    def __post_init__(self):
+        beta, sigma = self.beta, self.sigma
+        demand("beta", beta, (beta > 0) & (beta < 1), "more than 0 and less than 1")
+        good = (sigma > 0) & (sigma * (3.0 - 1.5 * beta) < 1)
+        demand("sigma", sigma, good, "more than 0 and less than 1/(3 - 1.5 beta)")
 
     @property
     def z(self):
@@ -110,6 +123,10 @@ class EnergyPolytrope:
     sigma: np.ndarray
     gamma: float | None = None
 
+    def __post_init__(self):
+        demand("index", self.index, self.index > 0, "a positive number")
+        demand("sigma", self.sigma, (self.sigma > 0) & np.isfinite(self.sigma), "a positive, finite number")
+
     @property
     def order(self):
         return self.index + 1.0
@@ -140,6 +157,11 @@ class RestPolytrope:
     index: float
     sigma: np.ndarray
     gamma: float | None = None
+
+    def __post_init__(self):
+        demand("index", self.index, self.index > 0, "a positive number")
+        good = (self.sigma > 0) & (self.sigma * self.index < 1)
+        demand("sigma", self.sigma, good, "more than 0 and less than 1/n")
 
     @property
     def order(self):

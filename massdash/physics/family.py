@@ -2,8 +2,8 @@
 
 Without pairs such a star is fixed by beta_c and sigma = P_c/epsilon_c, up to a scaling with the mean molecular weight:
 M mu^2 and T/mu depend on the two numbers alone. The shipped table (data/builders/family.py writes it) holds the
-structure as Chebyshev series; errors against direct integration are stored in it. Everything here is vectorised over
-stars; nothing loops over them. Arguments and results in cgs.
+structure as Chebyshev series; errors against direct integration are stored in it. Outside its box stars are integrated
+directly. Everything here is vectorised over stars; nothing loops over them. Arguments and results in cgs.
 """
 
 from dataclasses import dataclass
@@ -13,21 +13,27 @@ from importlib.resources import files
 import numpy as np
 
 from massdash.constants import K_B, M_U, RADIATION, C, G
-from massdash.errors import ComputationError
+from massdash.physics.barotropes import Isentrope, demand
+from massdash.physics.pulsation import pulsation
+from massdash.physics.series import Series
+from massdash.physics.tov import structure
 
-BLOCK = 2048  # stars at a time, so that intermediate arrays stay in the processor's cache
+NAMES = ("mass", "rest_mass", "radius", "binding", "frequency_squared", "stiffness", "response")
+_BATCH, _STEP = 1000, 1e-4  # stars at a time and relative step of derivatives where they are integrated directly
 
 
 @dataclass(frozen=True, eq=False)
 class Table:
-    """The series: ``coefficients`` (names, i, j) over root-beta and sigma, ``beta`` and ``sigma`` the box, ``errors``
-    the measured largest deviation of each name on its own scale."""
+    """``stars`` gives NAMES over root-beta and sigma, ``inverse`` the ratio D/w of ``relativistic`` over root-w and
+    theta/w; ``beta`` and ``sigma`` are the box, ``errors`` the measured largest deviation of each name on its own
+    scale, ``inverse_error`` that of the ratio."""
 
-    names: tuple[str, ...]
+    stars: Series
+    inverse: Series
     beta: tuple[float, float]
     sigma: tuple[float, float]
-    coefficients: np.ndarray
     errors: np.ndarray
+    inverse_error: float
 
     def covers(self, beta, sigma):
         """Whether the box holds these stars."""
@@ -38,84 +44,85 @@ class Table:
 def table():
     """The shipped table."""
     with (files("massdash") / "data" / "family.npz").open("rb") as file, np.load(file) as stored:
+        beta, sigma = tuple(stored["beta"].tolist()), tuple(stored["sigma"].tolist())
+        root, ratio = tuple(stored["root"].tolist()), tuple(stored["ratio"].tolist())
         return Table(
-            tuple(stored["names"].tolist()),
-            tuple(stored["beta"].tolist()),
-            tuple(stored["sigma"].tolist()),
-            stored["coefficients"],
+            Series(tuple(stored["names"].tolist()), tuple(np.sqrt(beta).tolist()), sigma, stored["coefficients"]),
+            Series(("shift",), root, ratio, stored["inverse"]),
+            beta,
+            sigma,
             stored["errors"],
+            float(stored["inverse_error"]),
         )
 
 
-@cache
-def _packed(names, derivatives):
-    """Coefficients of the named quantities, and of their derivatives by the two scaled coordinates, as one matrix
-    (quantities * j, i)."""
-    data = table()
-    chosen = data.coefficients[[data.names.index(name) for name in names]]
-    if derivatives:
-        along = np.zeros_like(chosen)
-        across = np.zeros_like(chosen)
-        along[:, :-1] = np.polynomial.chebyshev.chebder(chosen, axis=1)
-        across[:, :, :-1] = np.polynomial.chebyshev.chebder(chosen, axis=2)
-        chosen = np.concatenate([chosen, along, across])
-    return np.ascontiguousarray(chosen.transpose(0, 2, 1).reshape(-1, chosen.shape[1]))
-
-
-def _basis(x, count):
-    """Chebyshev polynomials (count, N) at x."""
-    rows = np.empty((count, x.size))
-    rows[0], rows[1] = 1.0, x
-    double = 2.0 * x
-    for k in range(2, count):
-        np.multiply(double, rows[k - 1], out=rows[k])
-        rows[k] -= rows[k - 2]
-    return rows
-
-
 def lookup(beta, sigma, names, *, derivatives=False):
-    """The named quantities of data/builders/family.py, stacked (names, ...), for stars inside the box.
+    """The named quantities of ``direct`` from the table, stacked (names, ...), for stars inside the box.
 
     With ``derivatives``, (3 * names, ...): values, then derivatives by beta_c, then by sigma. Shapes of ``beta`` and
     ``sigma`` must agree. No check of the box: see ``Table.covers``.
     """
-    data, packed = table(), _packed(tuple(names), derivatives)
     beta, sigma = np.asarray(beta, float), np.asarray(sigma, float)
-    low, high = np.sqrt(data.beta)
-    root, flat_sigma = np.sqrt(beta.ravel()), sigma.ravel()
-    i, j = data.coefficients.shape[1:]
-    result = np.empty((packed.shape[0] // j, root.size))
-    for start in range(0, root.size, BLOCK):
-        part = slice(start, start + BLOCK)
-        x = (2.0 * root[part] - (low + high)) / (high - low)
-        y = (2.0 * flat_sigma[part] - sum(data.sigma)) / (data.sigma[1] - data.sigma[0])
-        inner = (packed @ _basis(x, i)).reshape(-1, j, x.size)
-        result[:, part] = np.einsum("qjn,jn->qn", inner, _basis(y, j))
+    root = np.sqrt(beta.ravel())
+    result = table().stars(root, sigma.ravel(), names, derivatives=derivatives)
     if derivatives:
-        count = len(names)
-        result[count : 2 * count] /= (high - low) * root
-        result[2 * count :] *= 2.0 / (data.sigma[1] - data.sigma[0])
+        result[len(names) : 2 * len(names)] /= 2.0 * root
     return result.reshape(-1, *beta.shape)
+
+
+def direct(beta, sigma, *, tolerance=1e-12, panels=4, basis=None):
+    """NAMES, stacked (names, N), by direct integration.
+
+    ``mass``, ``rest_mass``, ``radius``, ``binding`` as in tov.Structure; ``frequency_squared`` of the lowest mode in
+    GM/R^3; ``stiffness`` is <Gamma_1 - 4/3>/beta_c with the weight of that mode, and ``response`` the ratio of
+    <Gamma_1> - Gamma_crit to frequency_squared.
+    """
+    star = structure(Isentrope(beta, sigma), tolerance=tolerance, panels=panels)
+    mode = pulsation(star, basis=basis)
+    square = mode.frequency_squared[0]
+    response = (mode.stiffness - mode.critical) / square
+    return np.stack([star.mass, star.rest_mass, star.radius, star.binding, square, mode.stiffness / beta, response])
+
+
+def values(beta, sigma, names=NAMES, *, derivatives=False):
+    """As ``lookup``, for any star: those outside the box are integrated directly, derivatives taken from
+    differences."""
+    inside = table().covers(beta, sigma)
+    if np.all(inside):
+        return lookup(beta, sigma, names, derivatives=derivatives)
+    result = np.empty((len(names) * (3 if derivatives else 1), *np.shape(beta)))
+    result[:, inside] = lookup(beta[inside], sigma[inside], names, derivatives=derivatives)
+    result[:, ~inside] = _integrated(beta[~inside], sigma[~inside], names, derivatives)
+    return result
+
+
+def _integrated(beta, sigma, names, derivatives):
+    rows = [NAMES.index(name) for name in names]
+    if not derivatives:
+        parts = [slice(start, start + _BATCH) for start in range(0, beta.size, _BATCH)]
+        return np.concatenate([direct(beta[part], sigma[part])[rows] for part in parts], axis=1)
+    d_beta, d_sigma = _STEP * beta * (1.0 - beta), _STEP * sigma
+    stars = np.stack([beta, beta + d_beta, beta - d_beta, beta, beta])
+    other = np.stack([sigma, sigma, sigma, sigma + d_sigma, sigma - d_sigma])
+    found = _integrated(stars.ravel(), other.ravel(), names, False).reshape(len(names), 5, -1)
+    slopes = [(found[:, 1] - found[:, 2]) / (2.0 * d_beta), (found[:, 3] - found[:, 4]) / (2.0 * d_sigma)]
+    return np.concatenate([found[:, 0], *slopes])
 
 
 # ------------------------------------------------------------------------------------------------ the scales of a star
 def central_theta(beta, sigma):
     """kT_c/(mu m_u c^2)."""
-    z = (1.0 - beta) / beta
-    return sigma / (1.0 + z - sigma * (3.0 * z + 1.5))
+    return sigma * beta / (1.0 - sigma * (3.0 - 1.5 * beta))
 
 
 def sigma_of_theta(beta, theta):
     """sigma of the star with central kT/(mu m_u c^2) = ``theta``."""
-    z = (1.0 - beta) / beta
-    return theta * (1.0 + z) / (1.0 + theta * (3.0 * z + 1.5))
+    return theta / (beta + theta * (3.0 - 1.5 * beta))
 
 
-def _energy_density(beta, theta):
-    """epsilon_c/c^2 over mu^4 [g cm-3]: rho_c = a T^3 mu m_u/(3 k z) with T = theta mu m_u c^2/k."""
-    z = (1.0 - beta) / beta
-    rest = RADIATION / (3.0 * z) * (M_U / K_B) ** 4 * (theta * C**2) ** 3
-    return rest * (1.0 + theta * (3.0 * z + 1.5)), rest
+def central_density(beta, theta):
+    """Rest-mass density over mu^4 [g cm-3]: rho_c = a T^3 mu m_u/(3 k z) with T = theta mu m_u c^2/k."""
+    return RADIATION / 3.0 * (M_U / K_B) ** 4 * C**6 * theta**3 * beta / (1.0 - beta)
 
 
 def length_unit(sigma, energy_density):
@@ -152,17 +159,18 @@ class Star:
 
 
 def stars(beta, sigma, mu, support=0.0):
-    """The Star of each (beta_c, sigma) at mean molecular weight ``mu``; raises ComputationError outside the box.
+    """The Star of each (beta_c, sigma) at mean molecular weight ``mu``.
 
     ``support`` is what rotation or a background adds to the effective Gamma_1: it lowers ``critical`` and stiffens the
-    pulsation, and leaves the spherical structure as it is.
+    pulsation, and leaves the spherical structure as it is. Raises InputError for values no star can have.
     """
     beta, sigma, mu, support = np.broadcast_arrays(*(np.asarray(one, float) for one in (beta, sigma, mu, support)))
-    if not np.all(table().covers(beta, sigma)):
-        raise ComputationError("a star lies outside the table of relativistic stars")
-    mass, rest, radius, binding, square, stiffness, response = lookup(beta, sigma, table().names)
+    Isentrope(beta, sigma)  # refuses what no star can have
+    demand("mean molecular weight", mu, (mu > 0) & np.isfinite(mu), "a positive number")
+    mass, rest, radius, binding, square, stiffness, response = values(beta, sigma)
     theta = central_theta(beta, sigma)
-    energy_density, density = _energy_density(beta, theta)
+    density = central_density(beta, theta)
+    energy_density = density * (theta / (sigma * beta))
     length = length_unit(sigma, energy_density) / mu**2
     unit = 4.0 * np.pi * length**3 * energy_density * mu**4
     compactness = 4.0 * sigma * mass / radius

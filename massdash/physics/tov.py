@@ -93,11 +93,8 @@ def structure(matter, *, tolerance=1e-12, nodes=NODES, panels=PANELS):
     """The stars of a barotrope batch (see ``barotropes``), all to the relative ``tolerance`` of mass and radius.
 
     The number of panels is doubled until the error, estimated from the last coefficients of the integrands, is small
-    enough for every star of the batch. Raises ComputationError when that does not help, ValueError for parameters that
-    are not positive and finite.
+    enough for every star of the batch. Raises ComputationError when that does not help.
     """
-    if not np.all(np.isfinite(matter.sigma) & (matter.sigma > 0)):
-        raise ValueError("sigma must be positive and finite")
     reason = ""
     while panels <= MOST_PANELS:
         try:

@@ -1,38 +1,25 @@
 """Writes data/family.npz: isentropic stars of gas and radiation in full general relativity, as Chebyshev series.
 
 Run ``python -m massdash.data.builders.family`` after a change in physics/barotropes.py, tov.py or pulsation.py. Every
-quantity is a polynomial in the square root of beta_c and in sigma, fitted at Chebyshev points; the largest deviation
-from direct integration at random points of the box is measured and stored with it.
+quantity is a polynomial in the square root of beta_c and in sigma, fitted at Chebyshev points; so is the way back from
+rest mass and temperature (see ``physics.relativistic``). The largest deviation from direct integration at random
+points of the box is measured, with more nodes and functions than the fit had, and stored.
 """
 
 from pathlib import Path
 
 import numpy as np
-from numpy.polynomial import chebyshev
 
-from massdash.physics.barotropes import Isentrope
-from massdash.physics.pulsation import pulsation
-from massdash.physics.tov import structure
+from massdash.physics import series
+from massdash.physics.family import NAMES, central_theta, direct
+from massdash.physics.relativistic import LANE_EMDEN_MASS
+from massdash.physics.roots import secant
 
 BETA = (2e-4, 0.7)
 SIGMA = (0.0, 0.05)
 NODES = (36, 16)
-NAMES = ("mass", "rest_mass", "radius", "binding", "frequency_squared", "stiffness", "response")
+INVERSE_NODES = (28, 12)
 CHECKS, SEED = 2000, 20260101
-
-
-def quantities(beta, sigma):
-    """The tabulated quantities (names, N) by direct integration.
-
-    ``mass``, ``rest_mass``, ``radius``, ``binding`` as in tov.Structure; ``frequency_squared`` in GM/R^3;
-    ``stiffness`` is <Gamma_1 - 4/3>/beta_c with the weight of the lowest mode, and ``response`` the ratio of
-    <Gamma_1> - Gamma_crit to frequency_squared.
-    """
-    star = structure(Isentrope(beta, sigma), tolerance=1e-13, panels=8)
-    mode = pulsation(star, basis=12)
-    square = mode.frequency_squared[0]
-    response = (mode.stiffness - mode.critical) / square
-    return np.stack([star.mass, star.rest_mass, star.radius, star.binding, square, mode.stiffness / beta, response])
 
 
 def scales(beta, sigma, values):
@@ -44,37 +31,76 @@ def scales(beta, sigma, values):
     return result
 
 
-def coefficients():
-    """Chebyshev coefficients (names, NODES) over the box."""
-    points = [chebyshev.chebpts1(count) for count in NODES]
-    low, high = np.sqrt(BETA)
-    root = low + (high - low) * (points[0] + 1.0) / 2.0
-    sigma = SIGMA[0] + (SIGMA[1] - SIGMA[0]) * (points[1] + 1.0) / 2.0
-    beta, sigma = np.meshgrid(root**2, sigma, indexing="ij")
-    values = quantities(beta.ravel(), sigma.ravel()).reshape(len(NAMES), *NODES)
-    inverse = [np.linalg.inv(chebyshev.chebvander(x, count - 1)) for x, count in zip(points, NODES, strict=True)]
-    return np.einsum("ib,qbs,js->qij", inverse[0], values, inverse[1])
+def stars():
+    """The Series of NAMES over root-beta and sigma."""
+    root = tuple(np.sqrt(BETA))
+    beta, sigma = np.meshgrid(series.points(NODES[0], root) ** 2, series.points(NODES[1], SIGMA), indexing="ij")
+    values = direct(beta.ravel(), sigma.ravel(), tolerance=1e-13, panels=8, basis=20)
+    return series.fit(NAMES, root, SIGMA, values.reshape(-1, *NODES))
 
 
-def measured_errors(table):
-    """Largest deviation of each quantity from direct integration at random points of the box, on its own scale."""
+def proxies(beta, sigma, rest_mass):
+    """root-w and theta/w of stars, from their ``rest_mass`` in the unit of the table."""
+    theta = central_theta(beta, sigma)
+    w = theta / sigma / np.sqrt(rest_mass / LANE_EMDEN_MASS * np.sqrt(1.0 - beta))
+    return np.sqrt(w), theta / w
+
+
+def inverse(table):
+    """The Series of D/w over root-w and theta/w, on a box that holds the images of all stars of the table."""
+    root, sigma = (axis.ravel() for axis in np.meshgrid(np.linspace(*table.x, 200), np.linspace(1e-9, SIGMA[1], 50)))
+    x, y = proxies(root**2, sigma, table(root, sigma, ("rest_mass",))[0])
+    box = (0.99 * x.min(), 1.01 * x.max()), (0.0, 1.01 * y.max())
+    x, y = np.meshgrid(*(series.points(n, span) for n, span in zip(INVERSE_NODES, box, strict=True)), indexing="ij")
+    return series.fit(("shift",), *box, shift(x.ravel(), y.ravel()).reshape(1, *INVERSE_NODES))
+
+
+def shift(x, y):
+    """D/w by direct integration."""
+    w = x**2
+
+    def residual(log_shift):
+        ratio = np.exp(log_shift)
+        beta = w * (ratio - 3.0 * y) / (1.0 - 1.5 * y * w)
+        mass = direct(beta, y / ratio, tolerance=1e-13, panels=8, basis=9)[NAMES.index("rest_mass")]
+        return 2.0 * log_shift - np.log(mass / LANE_EMDEN_MASS) - 0.5 * np.log1p(-beta)
+
+    return np.exp(secant(residual, np.log(1.0 - 0.25 * w - 3.0 * y), what="inverse of the family"))
+
+
+def sample():
+    """Random (beta, sigma) of the whole box, small sigma as often as large."""
     random = np.random.default_rng(SEED)
     beta = np.exp(random.uniform(*np.log(BETA), CHECKS))
-    sigma = np.where(
-        random.random(CHECKS) < 0.5, random.uniform(1e-7, SIGMA[1], CHECKS), 10 ** random.uniform(-7, -1.302, CHECKS)
+    low, high = 1e-7, SIGMA[1]
+    spread = np.exp(random.uniform(np.log(low), np.log(high), CHECKS))
+    return beta, np.where(random.random(CHECKS) < 0.5, random.uniform(low, high, CHECKS), spread)
+
+
+def main():
+    table = stars()
+    back = inverse(table)
+    beta, sigma = sample()
+    exact = direct(beta, sigma, tolerance=1e-14, panels=16, basis=28)
+    found = table(np.sqrt(beta), sigma)
+    errors = (np.abs(found - exact) / scales(beta, sigma, exact)).max(axis=1)
+    x, y = proxies(beta, sigma, exact[NAMES.index("rest_mass")])
+    inverse_error = np.max(np.abs(back(x, y)[0] * x**2 * sigma / central_theta(beta, sigma) - 1.0))
+    for name, error in zip((*NAMES, "inverse"), (*errors, inverse_error), strict=True):
+        print(f"{name}: {error:.1e}")
+    np.savez_compressed(
+        Path(__file__).parents[1] / "family.npz",
+        names=NAMES,
+        beta=BETA,
+        sigma=SIGMA,
+        coefficients=table.coefficients,
+        errors=errors,
+        root=back.x,
+        ratio=back.y,
+        inverse=back.coefficients,
+        inverse_error=inverse_error,
     )
-    low, high = np.sqrt(BETA)
-    basis = chebyshev.chebvander(2.0 * (np.sqrt(beta) - low) / (high - low) - 1.0, NODES[0] - 1)
-    other = chebyshev.chebvander(2.0 * (sigma - SIGMA[0]) / (SIGMA[1] - SIGMA[0]) - 1.0, NODES[1] - 1)
-    exact = quantities(beta, sigma)
-    deviation = np.abs(np.einsum("ni,qij,nj->qn", basis, table, other) - exact) / scales(beta, sigma, exact)
-    return deviation.max(axis=1)
 
 
 if __name__ == "__main__":
-    table = coefficients()
-    errors = measured_errors(table)
-    for name, error in zip(NAMES, errors, strict=True):
-        print(f"{name}: {error:.1e}")
-    target = Path(__file__).parents[1] / "family.npz"
-    np.savez_compressed(target, names=NAMES, beta=BETA, sigma=SIGMA, coefficients=table, errors=errors)
+    main()
