@@ -1,7 +1,9 @@
 /* One chart: its elements in the page, its scales and marks of the moment, and when it is painted. */
 
-const HOW_TO = "Hover to read values. Drag a box to zoom; the wheel zooms while the chart has focus or with Ctrl; "
-  + "double click, 0 or Escape resets. Keys: arrows move the read-out, + and − zoom, Enter clicks, Shift and arrows move a handle, H picks the next.";
+const HOW_TO =
+  "Hover to read values. Drag a box to zoom; the wheel zooms while the chart has focus or with Ctrl; " +
+  "double click, 0 or Escape resets. Keys: arrows move the read-out, + and − zoom, Enter clicks, " +
+  "Shift and arrows move a handle, H picks the next.";
 const MOST_PIXELS = 16e6;
 
 function element(tag, className, parent, attributes = {}) {
@@ -16,7 +18,16 @@ let charts = 0;
 
 class ChartView {
   constructor(grid, key, page) {
-    Object.assign(this, { key, page, marks: [], map: null, prepared: null, holds: new Map(), width: 0, legendText: "" });
+    Object.assign(this, {
+      key,
+      page,
+      marks: [],
+      map: null,
+      prepared: null,
+      holds: new Map(),
+      width: 0,
+      legendText: "",
+    });
     this.helpId = `massdash-help-${++charts}`;
     this.build(grid);
     this.watcher = new ResizeObserver(([entry]) => this.resize(entry.contentRect.width));
@@ -31,7 +42,9 @@ class ChartView {
     element("span", "massdash-how", this.head, { title: HOW_TO, "aria-hidden": "true" }).textContent = "?";
     this.legend = element("div", "massdash-legend", this.cell);
     this.plot = element("div", "massdash-plot", this.cell, {
-      tabindex: "0", role: "img", "aria-describedby": this.helpId,
+      tabindex: "0",
+      role: "img",
+      "aria-describedby": this.helpId,
       "data-lm-suppress-shortcuts": "true", // else JupyterLab takes the keys for its own shortcuts
     });
     this.canvas = element("canvas", "massdash-canvas", this.plot, { "aria-hidden": "true" });
@@ -49,7 +62,9 @@ class ChartView {
     this.cell.remove();
   }
 
-  get theme() { return this.page.theme; }
+  get theme() {
+    return this.page.theme;
+  }
 
   /** Takes the structure when it changed; zoom survives unless an axis is another one now. */
   setStructure(structure) {
@@ -58,7 +73,9 @@ class ChartView {
     const axes = { x: structure.x, y: structure.y, ...(map ? { z: map.axis } : {}) };
     const kept = (name, axis) => {
       const old = this.scales?.[name];
-      return old && old.scale === axis.scale && old.label === axis.label && old.unit === axis.unit ? old : new Scale(axis);
+      return old && old.scale === axis.scale && old.label === axis.label && old.unit === axis.unit
+        ? old
+        : new Scale(axis);
     };
     this.scales = Object.fromEntries(Object.entries(axes).map(([name, axis]) => [name, kept(name, axis)]));
   }
@@ -83,7 +100,9 @@ class ChartView {
   }
 
   /** Where the reader holds a mark that is being dragged; Python's place takes over after the drop. */
-  held(mark) { return mark.handle ? this.holds.get(mark.handle) : undefined; }
+  held(mark) {
+    return mark.handle ? this.holds.get(mark.handle) : undefined;
+  }
 
   resize(width) {
     this.width = Math.min(Math.floor(width), 4000);
@@ -118,7 +137,10 @@ class ChartView {
     if (text === this.legendText) return;
     this.legendText = text;
     this.legend.textContent = "";
-    this.legend.classList.toggle("massdash-used", entries.length > 0 || this.legend.classList.contains("massdash-used"));
+    this.legend.classList.toggle(
+      "massdash-used",
+      entries.length > 0 || this.legend.classList.contains("massdash-used"),
+    );
     for (const { text: said, colour, dash } of entries) {
       const item = element("span", "massdash-entry", this.legend);
       if (dash) element("span", "massdash-swatch", item).style.borderTop = `2px ${swatchStyle(dash)} ${colour}`;

@@ -21,7 +21,12 @@ function typedForm(value) {
 /** Slider positions 0..count <-> values, linear or logarithmic, in round values. */
 class Track {
   constructor(get) {
-    Object.assign(this, { minimum: get("minimum"), maximum: get("maximum"), log: get("scale") === "log", digits: get("digits") });
+    Object.assign(this, {
+      minimum: get("minimum"),
+      maximum: get("maximum"),
+      log: get("scale") === "log",
+      digits: get("digits"),
+    });
     this.step = get("step") || (this.maximum - this.minimum) / LOG_POSITIONS;
     const positions = Math.round((this.maximum - this.minimum) / this.step);
     this.count = this.log ? LOG_POSITIONS : Math.max(1, Math.min(100000, positions));
@@ -29,15 +34,20 @@ class Track {
 
   position(value) {
     const { minimum, maximum, log } = this;
-    const part = log ? Math.log(value / minimum) / Math.log(maximum / minimum) : (value - minimum) / (maximum - minimum);
+    const part = log
+      ? Math.log(value / minimum) / Math.log(maximum / minimum)
+      : (value - minimum) / (maximum - minimum);
     return part * this.count;
   }
 
   value(position) {
-    const { minimum, maximum, log, step, digits } = this, part = position / this.count;
+    const { minimum, maximum, log, step, digits } = this,
+      part = position / this.count;
     if (part <= 0) return minimum;
     if (part >= 1) return maximum;
-    const exact = log ? minimum * (maximum / minimum) ** part : minimum + Math.round((part * (maximum - minimum)) / step) * step;
+    const exact = log
+      ? minimum * (maximum / minimum) ** part
+      : minimum + Math.round((part * (maximum - minimum)) / step) * step;
     const value = Number(exact.toPrecision(log ? digits : 12));
     return Math.min(maximum, Math.max(minimum, value)); // rounding must not leave the range
   }
@@ -45,7 +55,13 @@ class Track {
 
 class Field {
   constructor(model, host) {
-    Object.assign(this, { model, sent: 0, held: false, id: `massdash-field-${++fields}`, ended: new AbortController() });
+    Object.assign(this, {
+      model,
+      sent: 0,
+      held: false,
+      id: `massdash-field-${++fields}`,
+      ended: new AbortController(),
+    });
     this.get = (name) => model.get(name);
     this.build(host);
     this.bind();
@@ -56,14 +72,30 @@ class Field {
 
   build(host) {
     const { id } = this;
-    this.root = make("div", "massdash-field", host, { role: "group", "aria-labelledby": `${id}-label`, "data-lm-suppress-shortcuts": "true" });
+    this.root = make("div", "massdash-field", host, {
+      role: "group",
+      "aria-labelledby": `${id}-label`,
+      "data-lm-suppress-shortcuts": "true",
+    });
     const head = make("div", "massdash-field-head", this.root);
     this.label = make("label", "massdash-field-label", head, { id: `${id}-label`, for: `${id}-text` });
     const described = `${id}-range ${id}-message`;
-    this.text = make("input", "massdash-field-text", head, { id: `${id}-text`, type: "text", inputmode: "decimal", autocomplete: "off",
-      spellcheck: "false", maxlength: "40", "aria-describedby": described });
+    this.text = make("input", "massdash-field-text", head, {
+      id: `${id}-text`,
+      type: "text",
+      inputmode: "decimal",
+      autocomplete: "off",
+      spellcheck: "false",
+      maxlength: "40",
+      "aria-describedby": described,
+    });
     this.unit = make("span", "massdash-field-unit", head);
-    this.slider = make("input", "massdash-field-slider", this.root, { type: "range", min: "0", step: "any", "aria-describedby": described });
+    this.slider = make("input", "massdash-field-slider", this.root, {
+      type: "range",
+      min: "0",
+      step: "any",
+      "aria-describedby": described,
+    });
     const foot = make("div", "massdash-field-foot", this.root);
     this.choice = make("label", "massdash-field-choice", foot);
     this.none = make("input", "massdash-field-none", this.choice, { type: "checkbox" });
@@ -72,7 +104,11 @@ class Field {
     this.reset = make("button", "massdash-field-reset", foot, { type: "button" });
     this.reset.textContent = "reset";
     this.help = make("div", "massdash-field-help", this.root);
-    this.message = make("div", "massdash-field-message", this.root, { id: `${id}-message`, role: "status", "aria-live": "polite" });
+    this.message = make("div", "massdash-field-message", this.root, {
+      id: `${id}-message`,
+      role: "status",
+      "aria-live": "polite",
+    });
   }
 
   bind() {
@@ -136,8 +172,14 @@ class Field {
 
   /** Assistive tools hear the value, not the position of the thumb. */
   speak(value) {
-    const unit = this.get("unit_shown"), { minimum, maximum } = this.track;
-    const told = { valuemin: minimum, valuemax: maximum, valuenow: value, valuetext: formatNumber(value, 6) + (unit && ` ${unit}`) };
+    const unit = this.get("unit_shown"),
+      { minimum, maximum } = this.track;
+    const told = {
+      valuemin: minimum,
+      valuemax: maximum,
+      valuenow: value,
+      valuetext: formatNumber(value, 6) + (unit && ` ${unit}`),
+    };
     for (const [name, said] of Object.entries(told)) this.slider.setAttribute(`aria-${name}`, String(said));
   }
 
@@ -151,7 +193,8 @@ class Field {
   }
 
   showWords() {
-    const [label, unit, help] = ["label", "unit_shown", "help"].map(this.get), { minimum, maximum } = this.track;
+    const [label, unit, help] = ["label", "unit_shown", "help"].map(this.get),
+      { minimum, maximum } = this.track;
     this.label.textContent = label;
     this.unit.textContent = unit;
     this.slider.setAttribute("aria-label", unit ? `${label} in ${unit}` : label);
@@ -164,7 +207,8 @@ class Field {
   }
 
   showReset(label) {
-    const value = this.get("default"), unit = this.get("unit_shown");
+    const value = this.get("default"),
+      unit = this.get("unit_shown");
     const words = value === null ? this.get("none_label") : `${formatNumber(value, 6)} ${unit}`.trim();
     this.reset.title = `back to ${words}`;
     this.reset.setAttribute("aria-label", `${label}: back to ${words}`);
@@ -173,7 +217,8 @@ class Field {
   }
 
   showNumber() {
-    const none = this.get("value") === null, number = this.get("number");
+    const none = this.get("value") === null,
+      number = this.get("number");
     this.none.checked = none;
     this.slider.disabled = this.text.disabled = none;
     this.slider.max = String(this.track.count);

@@ -5,7 +5,8 @@ const ARRAY_TYPES = { f4: Float32Array, f8: Float64Array, u1: Uint8Array };
 /** The columns of a frame; ``buffer`` is a DataView into the message. */
 function readColumns({ columns, buffer }) {
   return columns.map(([kind, offset, count]) => {
-    const Type = ARRAY_TYPES[kind], start = buffer.byteOffset + offset;
+    const Type = ARRAY_TYPES[kind],
+      start = buffer.byteOffset + offset;
     return new Type(buffer.buffer.slice(start, start + count * Type.BYTES_PER_ELEMENT)); // a copy, as offsets must align
   });
 }
@@ -22,6 +23,8 @@ function wholeMark(structure, moment, columns) {
 /** Whether a frame belongs to a structure: the same number of charts and of marks in each. */
 function fits(structure, frame) {
   const { charts = [] } = structure;
-  return frame.charts?.length === charts.length
-    && charts.every((chart, i) => chart.marks.length === frame.charts[i].marks.length);
+  return (
+    frame.charts?.length === charts.length &&
+    charts.every((chart, i) => chart.marks.length === frame.charts[i].marks.length)
+  );
 }

@@ -36,16 +36,21 @@ class ChartInput {
 
   /** Where an event is: pixels in the cell, fractions of the plot. */
   where(event) {
-    const { left, top } = this.view.plot.getBoundingClientRect(), { box } = this.view.picture;
-    const px = event.clientX - left, py = event.clientY - top;
+    const { left, top } = this.view.plot.getBoundingClientRect(),
+      { box } = this.view.picture;
+    const px = event.clientX - left,
+      py = event.clientY - top;
     return { px, py, fx: (px - box.left) / box.width, fy: 1 - (py - box.top) / box.height };
   }
 
-  get handles() { return this.view.marks.filter((mark) => mark.handle); }
+  get handles() {
+    return this.view.marks.filter((mark) => mark.handle);
+  }
 
   /** Fractions of a mark with a handle; the axis a rule does not have is NaN. */
   placeOf(mark) {
-    const { x, y } = this.view.scales, held = this.view.held(mark);
+    const { x, y } = this.view.scales,
+      held = this.view.held(mark);
     if (mark.kind === "point") return [x.place(held?.x ?? mark.x), y.place(held?.y ?? mark.y)];
     const at = this.view.scales[mark.axis].place(held?.[mark.axis] ?? mark.at);
     return mark.axis === "x" ? [at, NaN] : [NaN, at];
@@ -55,7 +60,8 @@ class ChartInput {
     const { box } = this.view.picture;
     const apart = (mark) => {
       const [mx, my] = this.placeOf(mark);
-      const dx = Number.isNaN(mx) ? 0 : (mx - fx) * box.width, dy = Number.isNaN(my) ? 0 : (my - fy) * box.height;
+      const dx = Number.isNaN(mx) ? 0 : (mx - fx) * box.width,
+        dy = Number.isNaN(my) ? 0 : (my - fy) * box.height;
       return Number.isNaN(mx) && Number.isNaN(my) ? Infinity : Math.hypot(dx, dy);
     };
     const near = this.handles.filter((mark) => apart(mark) <= NEAR_HANDLE + (mark.kind === "point" ? 4 : 0));
@@ -76,7 +82,8 @@ class ChartInput {
 
   move(event) {
     if (!this.view.picture) return;
-    const place = this.where(event), { pressed } = this;
+    const place = this.where(event),
+      { pressed } = this;
     if (!pressed) return this.hover(place);
     pressed.moving ||= Math.hypot(place.px - pressed.px, place.py - pressed.py) > CLICK_SLACK;
     if (!pressed.moving) return;
@@ -108,7 +115,9 @@ class ChartInput {
     else tell();
   }
 
-  get zoomed() { return Boolean(this.view.scales.x.view || this.view.scales.y.view); }
+  get zoomed() {
+    return Boolean(this.view.scales.x.view || this.view.scales.y.view);
+  }
 
   tell(kind, handle, place) {
     const { x, y } = this.view.scales;
@@ -128,7 +137,9 @@ class ChartInput {
   showZoomBox(from, to) {
     const { box } = this.view.picture;
     const [left, right] = [from.fx, to.fx].map((f) => box.left + clampFraction(f) * box.width).sort((a, b) => a - b);
-    const [top, bottom] = [from.fy, to.fy].map((f) => box.top + (1 - clampFraction(f)) * box.height).sort((a, b) => a - b);
+    const [top, bottom] = [from.fy, to.fy]
+      .map((f) => box.top + (1 - clampFraction(f)) * box.height)
+      .sort((a, b) => a - b);
     const size = { left, top, width: right - left, height: bottom - top };
     const pixels = Object.entries(size).map(([name, value]) => [name, `${value}px`]);
     Object.assign(this.view.zoomBox.style, Object.fromEntries(pixels), { display: "block" });
@@ -138,7 +149,10 @@ class ChartInput {
   zoomToBox(from, to) {
     this.view.zoomBox.style.display = "none";
     const { box } = this.view.picture;
-    for (const [name, a, b, size] of [["x", from.fx, to.fx, box.width], ["y", from.fy, to.fy, box.height]]) {
+    for (const [name, a, b, size] of [
+      ["x", from.fx, to.fx, box.width],
+      ["y", from.fy, to.fy, box.height],
+    ]) {
       const [low, high] = [clampFraction(a), clampFraction(b)].sort((one, other) => one - other);
       if ((high - low) * size >= THIN_BOX) this.view.scales[name].zoomTo(low, high);
     }
@@ -149,7 +163,8 @@ class ChartInput {
     const focused = this.view.plot.getRootNode().activeElement === this.view.plot;
     if (!(event.ctrlKey || focused) || !this.view.picture) return; // a page full of charts must still scroll
     event.preventDefault();
-    const place = this.where(event), factor = Math.exp(Math.sign(event.deltaY) * 0.18);
+    const place = this.where(event),
+      factor = Math.exp(Math.sign(event.deltaY) * 0.18);
     this.zoom(place, factor, event.shiftKey ? ["x"] : event.altKey ? ["y"] : ["x", "y"]);
   }
 
@@ -168,7 +183,8 @@ class ChartInput {
   hover(place) {
     this.view.plot.style.cursor = this.handleNear(place) ? "grab" : "crosshair";
     this.curve = null;
-    this.cursor = place.fx >= 0 && place.fx <= 1 && place.fy >= 0 && place.fy <= 1 ? { fx: place.fx, fy: place.fy } : null;
+    this.cursor =
+      place.fx >= 0 && place.fx <= 1 && place.fy >= 0 && place.fy <= 1 ? { fx: place.fx, fy: place.fy } : null;
     this.refresh();
   }
 
@@ -191,16 +207,22 @@ class ChartInput {
     const { rows, fx, fy } = readAt(this.view, this.cursor.fx, this.cursor.fy, this.curve);
     const text = rows.join("\n");
     if (reading.textContent !== text) reading.textContent = text;
-    const x = picture.X(fx), y = picture.Y(fy), width = this.view.width, height = this.view.page.height;
+    const x = picture.X(fx),
+      y = picture.Y(fy),
+      width = this.view.width,
+      height = this.view.page.height;
     dot.style.transform = `translate(${x}px, ${y}px)`;
-    const side = x > width / 2 ? { left: "auto", right: `${width - x + 12}px` } : { left: `${x + 12}px`, right: "auto" };
-    const level = y > height / 2 ? { top: "auto", bottom: `${height - y + 12}px` } : { top: `${y + 12}px`, bottom: "auto" };
+    const side =
+      x > width / 2 ? { left: "auto", right: `${width - x + 12}px` } : { left: `${x + 12}px`, right: "auto" };
+    const level =
+      y > height / 2 ? { top: "auto", bottom: `${height - y + 12}px` } : { top: `${y + 12}px`, bottom: "auto" };
     Object.assign(reading.style, side, level);
   }
 
   key(event) {
     if (!this.view.picture) return;
-    const arrow = ARROWS[event.key], start = this.cursor || { fx: 0.5, fy: 0.5 };
+    const arrow = ARROWS[event.key],
+      start = this.cursor || { fx: 0.5, fy: 0.5 };
     if (arrow && event.shiftKey) this.moveHandle(arrow);
     else if (arrow) this.moveCursor(arrow, event.ctrlKey);
     else if (event.key === "+" || event.key === "=") this.zoom(start, 0.8);
@@ -215,7 +237,8 @@ class ChartInput {
 
   /** Left and right go along a curve, up and down to the next curve; over a map the cursor goes freely. */
   moveCursor([dx, dy], fine) {
-    const lines = this.view.marks.filter((mark) => mark.kind === "line"), { box } = this.view.picture;
+    const lines = this.view.marks.filter((mark) => mark.kind === "line"),
+      { box } = this.view.picture;
     const step = fine ? 1 / box.width : 1 / 60;
     const from = this.cursor || { fx: 0.5, fy: 0.5 };
     this.cursor = { fx: clampFraction(from.fx + dx * step), fy: from.fy };
@@ -228,16 +251,24 @@ class ChartInput {
   followCurve(lines, dy) {
     const at = lines.findIndex((mark) => mark.key === this.curve);
     this.curve = lines[at < 0 ? 0 : (at - dy + lines.length) % lines.length].key;
-    const mark = lines.find((line) => line.key === this.curve), { x, y } = this.view.scales;
+    const mark = lines.find((line) => line.key === this.curve),
+      { x, y } = this.view.scales;
     let nearest = Infinity;
     for (let i = 0; i < mark.x.length; i++) {
-      const apart = Math.abs(x.fraction(mark.x[i]) - this.cursor.fx), fy = y.fraction(mark.y[i]);
+      const apart = Math.abs(x.fraction(mark.x[i]) - this.cursor.fx),
+        fy = y.fraction(mark.y[i]);
       if (apart < nearest && fy >= 0 && fy <= 1) [nearest, this.cursor.fy] = [apart, fy];
     }
   }
 
   say(words) {
-    this.later("say", () => { this.view.spoken.textContent = words || this.view.reading.textContent; }, words ? 0 : 400);
+    this.later(
+      "say",
+      () => {
+        this.view.spoken.textContent = words || this.view.reading.textContent;
+      },
+      words ? 0 : 400,
+    );
   }
 
   chooseHandle() {

@@ -17,7 +17,8 @@ const tickTexts = (ticks) => ticks.map((tick) => tick.text);
 /** The last point of a curve inside the view as fractions [x, y], or null. */
 function lastVisible({ x, y }, scales) {
   for (let i = Math.min(x.length, y.length) - 1; i >= 0; i--) {
-    const fx = scales.x.fraction(x[i]), fy = scales.y.fraction(y[i]);
+    const fx = scales.x.fraction(x[i]),
+      fy = scales.y.fraction(y[i]);
     if (fx >= 0 && fx <= 1 && fy >= 0 && fy <= 1) return [fx, fy];
   }
   return null;

@@ -12,7 +12,8 @@ function colourImage(mark, [low, high]) {
   Object.assign(canvas, { width: columns, height: rows });
   const context = canvas.getContext("2d");
   const image = context.createImageData(columns, rows);
-  const pixels = new Uint32Array(image.data.buffer), colours = PACKED_TABLES[mark.palette];
+  const pixels = new Uint32Array(image.data.buffer),
+    colours = PACKED_TABLES[mark.palette];
   const coded = mark.values instanceof Uint8Array;
   for (let row = 0; row < rows; row++) {
     const out = (rows - 1 - row) * columns; // the first row is the lowest
@@ -28,8 +29,28 @@ function colourImage(mark, [low, high]) {
 
 /** Corners above the level, as bits of a square (counted from the lower left, anticlockwise) -> pairs of crossed edges. */
 const CROSSINGS = [
-  [], [[3, 0]], [[0, 1]], [[3, 1]], [[1, 2]], [[3, 2], [0, 1]], [[0, 2]], [[3, 2]],
-  [[2, 3]], [[2, 0]], [[0, 3], [1, 2]], [[2, 1]], [[1, 3]], [[1, 0]], [[0, 3]], [],
+  [],
+  [[3, 0]],
+  [[0, 1]],
+  [[3, 1]],
+  [[1, 2]],
+  [
+    [3, 2],
+    [0, 1],
+  ],
+  [[0, 2]],
+  [[3, 2]],
+  [[2, 3]],
+  [[2, 0]],
+  [
+    [0, 3],
+    [1, 2],
+  ],
+  [[2, 1]],
+  [[1, 3]],
+  [[1, 0]],
+  [[0, 3]],
+  [],
 ];
 
 /** Marching squares (Lorensen & Cline 1987, in two dimensions): x0, y0, x1, y1 of each piece of the line, in cells from
@@ -39,14 +60,19 @@ function contourPieces(values, [columns, rows], level, isMissing) {
   let corner;
   const part = (a, b) => (level - corner[a]) / (corner[b] - corner[a]);
   const edge = [
-    (i, j) => [i + part(0, 1), j], (i, j) => [i + 1, j + part(1, 2)],
-    (i, j) => [i + part(3, 2), j + 1], (i, j) => [i, j + part(0, 3)],
+    (i, j) => [i + part(0, 1), j],
+    (i, j) => [i + 1, j + part(1, 2)],
+    (i, j) => [i + part(3, 2), j + 1],
+    (i, j) => [i, j + part(0, 3)],
   ];
   for (let j = 0; j < rows - 1; j++) {
     for (let i = 0; i < columns - 1; i++) {
       const at = j * columns + i;
-      const above = (values[at] > level) | ((values[at + 1] > level) << 1)
-        | ((values[at + columns + 1] > level) << 2) | ((values[at + columns] > level) << 3);
+      const above =
+        (values[at] > level) |
+        ((values[at + 1] > level) << 1) |
+        ((values[at + columns + 1] > level) << 2) |
+        ((values[at + columns] > level) << 3);
       if (above === 0 || above === 15) continue;
       corner = [values[at], values[at + 1], values[at + columns + 1], values[at + columns]];
       if (corner.some(isMissing)) continue;
@@ -99,7 +125,8 @@ function paintMap(picture, mark) {
 
 /** Contour lines over the map: dark in a light seam, so that they show on every colour; zero is thicker. */
 function paintContours(picture, mark) {
-  const [columns, rows] = mark.shape, { scales } = picture;
+  const [columns, rows] = mark.shape,
+    { scales } = picture;
   const X = (i) => picture.X(scales.x.fraction(mark.x[0] + ((mark.x[1] - mark.x[0]) * (i + 0.5)) / columns));
   const Y = (j) => picture.Y(scales.y.fraction(mark.y[0] + ((mark.y[1] - mark.y[0]) * (j + 0.5)) / rows));
   for (const { level, pieces } of picture.view.prepared.lines) {
@@ -124,14 +151,16 @@ function strokeContour(picture, pieces, X, Y, level) {
 const CONTOUR_PLACES = 24;
 
 function labelContour(picture, pieces, X, Y, level) {
-  const count = pieces.length / 4, stride = Math.max(1, Math.floor(count / CONTOUR_PLACES));
+  const count = pieces.length / 4,
+    stride = Math.max(1, Math.floor(count / CONTOUR_PLACES));
   const places = [];
   for (let k = Math.floor(count / 2) % stride; k < count; k += stride) {
     places.push([X(pieces[4 * k]), Y(pieces[4 * k + 1]), "center"]);
   }
   const visible = places.filter(([x, y]) => isInside(x, y, picture.edges));
   if (!visible.length) return;
-  const { box } = picture, off = ([x, y]) => Math.hypot(x - box.left - box.width / 2, y - box.top - box.height / 2);
+  const { box } = picture,
+    off = ([x, y]) => Math.hypot(x - box.left - box.width / 2, y - box.top - box.height / 2);
   visible.sort((one, other) => off(one) - off(other));
   const text = formatNumber(level, 3);
   const written = picture.texts.put(text, visible, { colour: "#000", paper: "#fff", within: picture.edges });
@@ -144,7 +173,8 @@ function barImage(palette) {
   if (!barImages[palette]) {
     const canvas = document.createElement("canvas");
     Object.assign(canvas, { width: 1, height: 255 });
-    const context = canvas.getContext("2d"), image = context.createImageData(1, 255);
+    const context = canvas.getContext("2d"),
+      image = context.createImageData(1, 255);
     const pixels = new Uint32Array(image.data.buffer);
     for (let i = 0; i < 255; i++) pixels[i] = PACKED_TABLES[palette][255 - i];
     context.putImageData(image, 0, 0);
@@ -155,12 +185,23 @@ function barImage(palette) {
 
 function paintColourBar(picture, mark) {
   const { context, theme, box, scales } = picture;
-  const left = Math.round(box.left + box.width + BAR_GAP), right = left + BAR_WIDTH;
+  const left = Math.round(box.left + box.width + BAR_GAP),
+    right = left + BAR_WIDTH;
   context.imageSmoothingEnabled = true;
   context.drawImage(barImage(mark.palette), left, box.top, BAR_WIDTH, box.height);
   const levels = mark.levels.map((level) => scales.z.place(level)).filter((at) => at >= 0 && at <= 1);
-  strokeLines(picture, levels.map((at) => [left, picture.Y(at), right, picture.Y(at)]), "rgba(0,0,0,.8)", 1);
-  const ticks = picture.barTicks.map((tick) => [right, sharp(picture.Y(tick.at)), right + 4, sharp(picture.Y(tick.at))]);
+  strokeLines(
+    picture,
+    levels.map((at) => [left, picture.Y(at), right, picture.Y(at)]),
+    "rgba(0,0,0,.8)",
+    1,
+  );
+  const ticks = picture.barTicks.map((tick) => [
+    right,
+    sharp(picture.Y(tick.at)),
+    right + 4,
+    sharp(picture.Y(tick.at)),
+  ]);
   strokeLines(picture, ticks, theme.text, 1);
   Object.assign(context, { font: FONT, fillStyle: theme.text, textAlign: "left", textBaseline: "middle" });
   for (const { text, at } of picture.barTicks) if (text) context.fillText(text, right + TICK_GAP, picture.Y(at));

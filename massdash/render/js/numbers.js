@@ -1,7 +1,17 @@
 /* Numbers as text. */
 
 const SUPERSCRIPTS = {
-  "-": "⁻", 0: "⁰", 1: "¹", 2: "²", 3: "³", 4: "⁴", 5: "⁵", 6: "⁶", 7: "⁷", 8: "⁸", 9: "⁹",
+  "-": "⁻",
+  0: "⁰",
+  1: "¹",
+  2: "²",
+  3: "³",
+  4: "⁴",
+  5: "⁵",
+  6: "⁶",
+  7: "⁷",
+  8: "⁸",
+  9: "⁹",
 };
 
 const superscript = (integer) => String(integer).replace(/./g, (c) => SUPERSCRIPTS[c]);

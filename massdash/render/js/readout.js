@@ -8,9 +8,11 @@ const row = (scale, value) => `${scale.label} = ${withUnit(scale, value)}`;
 
 /** The nearest drawn sample of a curve to a place in the plot: {distance, i, fx, fy}, or null. */
 function nearestSample({ x, y }, { scales }, box, px, py) {
-  let found = null, least = Infinity;
+  let found = null,
+    least = Infinity;
   for (let i = 0; i < Math.min(x.length, y.length); i++) {
-    const fx = scales.x.fraction(x[i]), fy = scales.y.fraction(y[i]);
+    const fx = scales.x.fraction(x[i]),
+      fy = scales.y.fraction(y[i]);
     if (!(fx >= 0 && fx <= 1 && fy >= 0 && fy <= 1)) continue;
     const distance = Math.hypot(fx * box.width - px, (1 - fy) * box.height - py);
     if (distance < least) [found, least] = [{ distance, i, fx, fy }, distance];
@@ -22,7 +24,8 @@ function readPoint(view, box, px, py) {
   const { x, y } = view.scales;
   for (const mark of view.marks) {
     if (mark.kind !== "point") continue;
-    const fx = x.place(mark.x), fy = y.place(mark.y);
+    const fx = x.place(mark.x),
+      fy = y.place(mark.y);
     if (!(Math.hypot(fx * box.width - px, (1 - fy) * box.height - py) < NEAR_POINT)) continue;
     return { rows: [mark.label, row(x, mark.x), row(y, mark.y)].filter(Boolean), fx, fy };
   }
@@ -45,7 +48,8 @@ function readCurve(view, box, px, py, only) {
 /** The cell [column, row] of the map at a place, or null. */
 function cellAt(map, { x, y }, fx, fy) {
   const index = (span, t, count) => Math.floor(((t - span[0]) / (span[1] - span[0])) * count);
-  const column = index(map.x, x.coordinate(fx), map.shape[0]), line = index(map.y, y.coordinate(fy), map.shape[1]);
+  const column = index(map.x, x.coordinate(fx), map.shape[0]),
+    line = index(map.y, y.coordinate(fy), map.shape[1]);
   return column >= 0 && line >= 0 && column < map.shape[0] && line < map.shape[1] ? [column, line] : null;
 }
 
@@ -53,7 +57,9 @@ function cellAt(map, { x, y }, fx, fy) {
 function cellText(map, scale, [column, line]) {
   const value = map.values[line * map.shape[0] + column];
   if (!(map.values instanceof Uint8Array)) {
-    return Number.isFinite(value) ? `${scale.label} = ${withUnit(scale, scale.inverse(value))}` : `${scale.label}: no value`;
+    return Number.isFinite(value)
+      ? `${scale.label} = ${withUnit(scale, scale.inverse(value))}`
+      : `${scale.label}: no value`;
   }
   if (value === 0) return `${scale.label}: no value`;
   const sign = value === 1 ? "≲" : value === 255 ? "≳" : "≈";
@@ -66,19 +72,29 @@ function readCell(view, fx, fy) {
   const cell = map && cellAt(map, scales, fx, fy);
   if (!cell) return null;
   const centre = (span, i, count) => span[0] + ((span[1] - span[0]) * (i + 0.5)) / count;
-  const tx = centre(map.x, cell[0], map.shape[0]), ty = centre(map.y, cell[1], map.shape[1]);
-  const rows = [row(scales.x, scales.x.inverse(tx)), row(scales.y, scales.y.inverse(ty)), cellText(map, scales.z, cell)];
+  const tx = centre(map.x, cell[0], map.shape[0]),
+    ty = centre(map.y, cell[1], map.shape[1]);
+  const rows = [
+    row(scales.x, scales.x.inverse(tx)),
+    row(scales.y, scales.y.inverse(ty)),
+    cellText(map, scales.z, cell),
+  ];
   return { rows, fx: scales.x.fraction(tx), fy: scales.y.fraction(ty) };
 }
 
 /** The read-out at a place of the plot given as fractions: {rows, fx, fy, key?}. */
 function readAt(view, fx, fy, onlyKey) {
-  const { box } = view.picture, { x, y } = view.scales;
-  const px = fx * box.width, py = (1 - fy) * box.height;
+  const { box } = view.picture,
+    { x, y } = view.scales;
+  const px = fx * box.width,
+    py = (1 - fy) * box.height;
   if (onlyKey) {
     const curve = readCurve(view, box, px, py, onlyKey);
     if (curve) return curve;
   }
-  return readPoint(view, box, px, py) || readCurve(view, box, px, py) || readCell(view, fx, fy)
-    || { rows: [row(x, x.value(fx)), row(y, y.value(fy))], fx, fy };
+  return (
+    readPoint(view, box, px, py) ||
+    readCurve(view, box, px, py) ||
+    readCell(view, fx, fy) || { rows: [row(x, x.value(fx)), row(y, y.value(fy))], fx, fy }
+  );
 }

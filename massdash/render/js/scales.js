@@ -29,20 +29,38 @@ class Scale {
 
   /** Whether doubles hold and resolve a range; an axis that reached further would have ticks at infinity. */
   acceptable(start, end) {
-    const far = Math.max(Math.abs(start), Math.abs(end)), values = [this.inverse(start), this.inverse(end)];
-    const held = values.every((value) => Math.abs(value) < 8.5e307) && (this.scale !== "log" || values.every((v) => v > 1e-307));
+    const far = Math.max(Math.abs(start), Math.abs(end)),
+      values = [this.inverse(start), this.inverse(end)];
+    const held =
+      values.every((value) => Math.abs(value) < 8.5e307) && (this.scale !== "log" || values.every((v) => v > 1e-307));
     return held && Math.abs(end - start) > NARROWEST * far;
   }
 
-  get start() { return (this.view || this.home)[0]; }
-  get end() { return (this.view || this.home)[1]; }
-  get low() { return Math.min(this.start, this.end); }
-  get high() { return Math.max(this.start, this.end); }
+  get start() {
+    return (this.view || this.home)[0];
+  }
+  get end() {
+    return (this.view || this.home)[1];
+  }
+  get low() {
+    return Math.min(this.start, this.end);
+  }
+  get high() {
+    return Math.max(this.start, this.end);
+  }
 
-  fraction(t) { return (t - this.start) / (this.end - this.start); }
-  coordinate(fraction) { return this.start + fraction * (this.end - this.start); }
-  place(value) { return value === null ? NaN : this.fraction(this.forward(value)); }
-  value(fraction) { return this.inverse(this.coordinate(fraction)); }
+  fraction(t) {
+    return (t - this.start) / (this.end - this.start);
+  }
+  coordinate(fraction) {
+    return this.start + fraction * (this.end - this.start);
+  }
+  place(value) {
+    return value === null ? NaN : this.fraction(this.forward(value));
+  }
+  value(fraction) {
+    return this.inverse(this.coordinate(fraction));
+  }
 
   /** Shows the part between two fractions of the present view, if doubles resolve it. */
   zoomTo(from, to) {

@@ -28,8 +28,10 @@ class Crowd {
   }
 
   mark(x, y) {
-    const column = (x / CELL) | 0, row = (y / CELL) | 0;
-    if (column >= 0 && row >= 0 && column < this.columns && row < this.rows) this.cells[row * this.columns + column] = 1;
+    const column = (x / CELL) | 0,
+      row = (y / CELL) | 0;
+    if (column >= 0 && row >= 0 && column < this.columns && row < this.rows)
+      this.cells[row * this.columns + column] = 1;
   }
 
   segment(x0, y0, x1, y1) {
@@ -40,7 +42,8 @@ class Crowd {
   /** How many crowded cells a box covers. */
   under([left, top, right, bottom]) {
     let count = 0;
-    const first = Math.max(0, (left / CELL) | 0), last = Math.min(this.columns - 1, (right / CELL) | 0);
+    const first = Math.max(0, (left / CELL) | 0),
+      last = Math.min(this.columns - 1, (right / CELL) | 0);
     for (let row = Math.max(0, (top / CELL) | 0); row <= Math.min(this.rows - 1, (bottom / CELL) | 0); row++) {
       for (let column = first; column <= last; column++) count += this.cells[row * this.columns + column];
     }
@@ -73,7 +76,8 @@ class Texts {
 
   /** Writes at the best of some places [x, y, align]; earlier ones win ties. The box written in, or null. */
   put(text, places, { colour, paper, within = this.canvas }) {
-    let best = null, least = Infinity;
+    let best = null,
+      least = Infinity;
     places.forEach(([x, y, align = "left"], rank) => {
       const box = this.box(text, x, y, align);
       if (!inside(box, within) || !this.free(box)) return;

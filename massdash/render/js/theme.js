@@ -29,8 +29,10 @@ function readTheme(element) {
 /** 256 colours as the 32-bit numbers an image takes. */
 function packedTable(name) {
   const rgb = COLOUR_TABLES[name];
-  return Uint32Array.from({ length: 256 }, (_, i) =>
-    (255 << 24) | (rgb[3 * i + 2] << 16) | (rgb[3 * i + 1] << 8) | rgb[3 * i]);
+  return Uint32Array.from(
+    { length: 256 },
+    (_, i) => (255 << 24) | (rgb[3 * i + 2] << 16) | (rgb[3 * i + 1] << 8) | rgb[3 * i],
+  );
 }
 
 const PACKED_TABLES = { sequential: packedTable("sequential"), diverging: packedTable("diverging") };

@@ -13,7 +13,10 @@ const decimals = (step) => Math.min(15, Math.max(0, Math.ceil(-Math.log10(step) 
 
 /** The tick with the fewest digits: what an axis far from zero is counted from. */
 function roundest(values) {
-  const length = (value) => String(Number(value.toPrecision(15))).replace(/e.*|\D/g, "").replace(/0+$/, "").length;
+  const length = (value) =>
+    String(Number(value.toPrecision(15)))
+      .replace(/e.*|\D/g, "")
+      .replace(/0+$/, "").length;
   return Number(values.reduce((best, v) => (length(v) < length(best) ? v : best)).toPrecision(15));
 }
 
@@ -56,7 +59,8 @@ function logTicks(low, high, count) {
   if (span < 0.7) return linearTicks(10 ** low, 10 ** high, count);
   const step = decadeStep(span, count);
   const ticks = [];
-  const first = Math.floor(low), decades = Math.min(MOST_DECADES, Math.ceil(high) - first);
+  const first = Math.floor(low),
+    decades = Math.min(MOST_DECADES, Math.ceil(high) - first);
   for (let i = 0; i <= decades; i++) {
     const k = first + i;
     if (k % step === 0) ticks.push({ value: powerOfTen(k), text: powerText(k) });
@@ -116,10 +120,14 @@ function axisTicks(scale, count) {
 function thinned(ticks, length, size, gap) {
   for (let round = 0; round < 6; round++) {
     const labels = ticks.filter((tick) => tick.text);
-    const touching = labels.some((tick, i) => i > 0
-      && (tick.at - labels[i - 1].at) * length < (size(tick.text) + size(labels[i - 1].text)) / 2 + gap);
+    const touching = labels.some(
+      (tick, i) =>
+        i > 0 && (tick.at - labels[i - 1].at) * length < (size(tick.text) + size(labels[i - 1].text)) / 2 + gap,
+    );
     if (!touching) break;
-    labels.forEach((tick, i) => { if (i % 2) tick.text = ""; });
+    labels.forEach((tick, i) => {
+      if (i % 2) tick.text = "";
+    });
   }
   return ticks;
 }

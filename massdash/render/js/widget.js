@@ -4,7 +4,16 @@ const DROP_WAIT = 1000;
 
 class Page {
   constructor(model, host) {
-    Object.assign(this, { model, host, views: [], queued: false, taken: -1, sent: 0, fresh: true, theme: readTheme(host) });
+    Object.assign(this, {
+      model,
+      host,
+      views: [],
+      queued: false,
+      taken: -1,
+      sent: 0,
+      fresh: true,
+      theme: readTheme(host),
+    });
     this.root = element("div", "massdash-charts", host);
     this.root.page = this; // for tests and the console
     this.ended = new AbortController();
@@ -13,10 +22,23 @@ class Page {
   }
 
   listen() {
-    const { model } = this, fresh = () => { this.fresh = true; this.wake(); }, wake = () => this.wake();
-    this.subscriptions = [["change:structure", fresh], ["change:frame", fresh], ["change:columns", wake], ["change:height", wake]];
+    const { model } = this,
+      fresh = () => {
+        this.fresh = true;
+        this.wake();
+      },
+      wake = () => this.wake();
+    this.subscriptions = [
+      ["change:structure", fresh],
+      ["change:frame", fresh],
+      ["change:columns", wake],
+      ["change:height", wake],
+    ];
     this.subscriptions.forEach(([name, handle]) => model.on(name, handle));
-    const restyle = () => { this.theme = null; this.wake(); };
+    const restyle = () => {
+      this.theme = null;
+      this.wake();
+    };
     this.pageWatcher = new MutationObserver(restyle);
     for (const node of [document.body, document.documentElement]) this.pageWatcher.observe(node, { attributes: true });
     matchMedia("(prefers-color-scheme: dark)").addEventListener("change", restyle, { signal: this.ended.signal });
@@ -31,7 +53,9 @@ class Page {
     this.gone = true;
   }
 
-  get height() { return Math.max(120, Math.min(2000, this.model.get("height") || 300)); }
+  get height() {
+    return Math.max(120, Math.min(2000, this.model.get("height") || 300));
+  }
 
   /** Asks for a paint; however often this is called, the page paints once per animation frame. */
   wake() {
@@ -66,7 +90,8 @@ class Page {
   /** The newest frame, unless a newer one was taken or its structure is still on the way. */
   takeFrame() {
     this.fresh = false;
-    const structure = this.model.get("structure"), frame = this.model.get("frame");
+    const structure = this.model.get("structure"),
+      frame = this.model.get("frame");
     if (!(frame.number > this.taken) || !fits(structure, frame)) return;
     if (structure !== this.structure) this.build(structure);
     const columns = readColumns(frame);
@@ -103,7 +128,9 @@ class Page {
 
   /** Without an answer in time the mark goes back to where Python last had it. */
   waitForAnswer(view, drop) {
-    setTimeout(() => { if (view.dropped === drop) this.letGo(view); }, DROP_WAIT);
+    setTimeout(() => {
+      if (view.dropped === drop) this.letGo(view);
+    }, DROP_WAIT);
   }
 
   letGo(view) {
