@@ -126,10 +126,16 @@ def solve(matter, nodes, panels):
     square, enclosed, binding, enthalpy, rate, states = zip(*parts, strict=True)
     state = State(*(np.concatenate([getattr(one, f.name) for one in states]) for f in fields(State)))
     joined = [np.concatenate(one) for one in (square, enclosed, binding, enthalpy, rate)]
+    error = (width * np.sum(tails, axis=0) / np.stack([end[0], end[1]])).max(axis=0) ** 2
+    return Structure(matter, np.sqrt(end[0]), end[1], end[2], *joined, grid(nodes, panels)[1], state), error
+
+
+def grid(nodes, panels):
+    """(q, weight) of the nodes, centre to surface, each (k, 1): see ``Structure.weight``."""
+    rule, width = _rule(nodes), 1.0 / panels
     weight = np.tile(width * rule.weights, panels)
     weight[:nodes] = width * rule.root_end / np.sqrt(rule.nodes)
-    error = (width * np.sum(tails, axis=0) / np.stack([end[0], end[1]])).max(axis=0) ** 2
-    return Structure(matter, np.sqrt(end[0]), end[1], end[2], *joined, weight[:, None], state), error
+    return (width * (np.arange(panels)[:, None] + rule.nodes)).reshape(-1, 1), weight[:, None]
 
 
 class _TooCoarse(ComputationError):
