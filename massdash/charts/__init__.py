@@ -8,10 +8,13 @@ from massdash.charts.margin_map import margin_map
 #: All figures by key, in the order in which they are shown.
 CHARTS = {"energy": energy_chart, "margin": margin_chart, "map": margin_map, "lifetimes": lifetime_chart}
 
+#: Figures that take ``post_newtonian=True`` to draw that approximation over full relativity.
+OVERLAID = ("energy", "margin", "map")
+
 
 def all_charts(outcome):
     """Every figure of an Outcome, in order."""
     return tuple(make(outcome) for make in CHARTS.values())
 
 
-__all__ = ["CHARTS", "all_charts", "energy_chart", "lifetime_chart", "margin_chart", "margin_map"]
+__all__ = ["CHARTS", "OVERLAID", "all_charts", "energy_chart", "lifetime_chart", "margin_chart", "margin_map"]

@@ -5,6 +5,7 @@ import numpy as np
 from massdash.charts.chart import Axis, Chart, Line, Point, Rule
 from massdash.model import words
 from massdash.numerals import numeral
+from massdash.physics import relativistic
 from massdash.physics.post_newtonian import energy_terms, equilibrium_at_density
 
 POINTS = 240
@@ -21,50 +22,59 @@ _TERMS = {
 }
 
 
-def energy_chart(outcome, *, terms=False):
-    """The Chart of E(rho_c) at the scenario's mass; with ``terms`` also each part of the energy.
+def energy_chart(outcome, *, terms=False, post_newtonian=False):
+    """The Chart of E(rho_c) at the scenario's rest mass, with the locus of equilibria in full relativity.
 
-    The star sits in the minimum of its own curve, behind a barrier; where the locus of equilibria has its minimum, the
-    barrier is gone. Where the methods do not cover the scenario the chart is empty and says so.
+    The star's own curve, E at fixed entropy, exists only in the post-Newtonian approximation: it is drawn for the star
+    in balance at the same central density, in its minimum and behind a barrier. With ``terms`` also each part of it,
+    with ``post_newtonian`` the locus in that approximation. Where the methods do not cover the scenario the chart is
+    empty and says so.
     """
     onset, star = outcome.workings.stability.onset, outcome.workings.present
     density = Axis("Central density", "g / cm3", "log")
     if onset is None or star is None:
-        return Chart(
-            "energy",
-            "Binding energy",
-            density,
-            Axis("Energy", "erg"),
-            alt=words.NOT_COVERED,
-            notes=(words.NOT_COVERED,),
-        )
+        said = {"alt": f"Binding energy: {words.NOT_COVERED}.", "notes": (words.NOT_COVERED,)}
+        return Chart("energy", "Binding energy", density, Axis("Energy", "erg"), **said)
     body = outcome.workings.matter.body
-    barrier = _barrier(body, star) if star is not onset else None
-    highest = max(_ABOVE * onset.density, _BEYOND * barrier[0] if barrier else 0.0)
-    rho = np.geomspace(_BELOW * star.density, highest, POINTS)
-    parts = energy_terms(body, star, rho)
-    locus = equilibrium_at_density(body, rho).energy
-    own = parts["total"]
+    trial = equilibrium_at_density(body, star.density)
+    barrier = _barrier(body, trial)
+    rho = np.geomspace(_BELOW * star.density, _highest(onset, barrier), POINTS)
+    parts = energy_terms(body, trial, rho)
     depth = abs(float(onset.energy))
-    top = max(0.6 * depth, 1.6 * barrier[1] if barrier else 0.0)
-    energy = Axis("Energy", "erg", "symlog", (_DEEPEST * depth, top), linear_width=depth)
     marks = [
-        Line("locus", "equilibria", rho, locus, 0),
-        Line("own", "at its entropy", rho, own, 1),
+        Line("locus", "equilibria", rho, _locus(body, rho), 0),
+        Line("own", "at its entropy (post-Newtonian)", rho, parts["total"], 1),
         Rule("zero", "", "y", 0.0),
         Point("onset", "onset of collapse", float(onset.density), float(onset.energy), "onset"),
     ]
+    if post_newtonian:
+        approximate = equilibrium_at_density(body, rho).energy
+        marks.append(Line("locus_pn", "equilibria (post-Newtonian)", rho, approximate, 6, 1.2))
+    top, bottom = max(0.6 * depth, 1.6 * barrier[1] if barrier else 0.0), _DEEPEST * depth
     if terms:
         marks += _term_lines(rho, parts)
-        largest = max(np.max(np.abs(values)) for values in parts.values())
-        energy = Axis("Energy", "erg", "symlog", (-1.5 * largest, 1.5 * largest), linear_width=depth)
+        top = 1.5 * max(np.max(np.abs(values)) for values in parts.values())
+        bottom = -top
     if barrier:
         marks.append(Point("barrier", "barrier", *barrier, "unstable"))
     marks.append(Point("star", outcome.scenario.label, float(star.density), float(star.energy), "present"))
-    notes = ("Post-Newtonian, first order, n = 3 shape, at fixed rest mass.",)
-    sources = tuple(words.energy_source(outcome.scenario).split("; "))
-    alt = _alt(outcome, star, onset, barrier)
+    energy = Axis("Energy", "erg", "symlog", (bottom, top), linear_width=depth)
+    notes = ("Locus and points in full relativity, the curve at fixed entropy post-Newtonian; fixed rest mass.",)
+    sources = (words.RELATIVITY_SOURCE, *words.energy_source(outcome.scenario).split("; "))
+    alt = _alt(outcome, star, onset)
     return Chart("energy", "Binding energy", density, energy, tuple(marks), alt, notes, sources)
+
+
+def _highest(onset, barrier):
+    return max(_ABOVE * onset.density, _BEYOND * barrier[0] if barrier else 0.0)
+
+
+def _locus(body, rho):
+    """Energy of the equilibria in full relativity; NaN beyond the table."""
+    known = relativistic.covers_density(body.mass, body.mu, rho)
+    energy = np.full_like(rho, np.nan)
+    energy[known] = relativistic.at_density(body.mass, body.mu, rho[known]).energy
+    return energy
 
 
 def _barrier(body, star):
@@ -90,7 +100,7 @@ def _term_lines(rho, parts):
     ]
 
 
-def _alt(outcome, star, onset, barrier):
+def _alt(outcome, star, onset):
     scenario = outcome.scenario
     settled = star is not onset
     where = "in the minimum of its own curve" if settled else "at the onset of collapse, where no barrier is left"

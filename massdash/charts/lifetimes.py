@@ -6,14 +6,12 @@ import numpy as np
 
 from massdash.charts.chart import Axis, Chart, Line, Point, Rule
 from massdash.charts.masses import family, mass_limits
-from massdash.constants import YEAR
+from massdash.constants import M_SUN, YEAR
 from massdash.model import words
 from massdash.model.life import hydrogen_at_onset
 from massdash.numerals import duration, numeral
-from massdash.physics import opacity
+from massdash.physics import opacity, relativistic
 from massdash.physics.evolution import EXHAUSTED, contraction_time, mixed_burning_time, nuclear_timescale
-from massdash.physics.onset import onset
-from massdash.physics.post_newtonian import equilibrium_at_temperature
 
 POINTS = 101
 
@@ -46,7 +44,9 @@ def lifetime_chart(outcome):
 def _onsets(family, ignition):
     """Masses [Msun] and the onset temperatures [K] of all of them."""
     masses = family.masses(POINTS, ignition)
-    return masses, onset(family.bodies(masses)).temperature if masses.size else masses
+    if not masses.size:
+        return masses, masses
+    return masses, relativistic.onset(masses * M_SUN, family.mu, family.rotation, family.background).temperature
 
 
 @lru_cache(maxsize=32)
@@ -56,7 +56,7 @@ def _curves(family, ignition, hydrogen, metals):
     if not masses.size:
         return masses, masses, masses, masses
     bodies = family.bodies(masses)
-    state = equilibrium_at_temperature(bodies, np.minimum(ignition, limit))
+    state = relativistic.at_temperature(bodies.mass, family.mu, np.minimum(ignition, limit))
     luminosity = opacity.eddington_luminosity(bodies.mass, opacity.surface_opacity(hydrogen)) * (1 - state.beta)
     contraction = contraction_time(state.energy, luminosity)
     nuclear = nuclear_timescale(bodies.mass, hydrogen, luminosity)

@@ -14,7 +14,7 @@ POINTS = 161
 LOWEST = -1.0  # the axis ends here; a star below it is drawn on the edge with its value beside it
 
 
-def margin_chart(outcome):
+def margin_chart(outcome, *, post_newtonian=False):
     """The Chart of the margin against rest mass; zero is the onset of collapse, no star below it ignites."""
     ignition = outcome.workings.stability.ignition
     masses, margin = _curve(family(outcome), ignition)
@@ -23,6 +23,8 @@ def margin_chart(outcome):
     marks = [Span("unstable", "collapses before it ignites", "y", None, 0.0)]
     if masses.size:
         marks.append(Line("margin", f"at {numeral(ignition, 2)} K", masses, margin, 0))
+    if masses.size and post_newtonian:
+        marks.append(Line("margin_pn", "post-Newtonian", *_approximate(family(outcome), ignition), 1, 1.2))
     largest = outcome.number("maximum_mass")
     if largest is not None and mass.limits[0] <= largest <= mass.limits[1]:
         marks.append(Rule("maximum_mass", f"largest mass {numeral(largest)}", "x", largest, 6))
@@ -34,8 +36,8 @@ def margin_chart(outcome):
             else f"{outcome.scenario.label}: {numeral(value, 2)}, off the axis"
         )
         marks.append(Point("star", text, outcome.scenario.number("mass"), max(value, LOWEST), "present"))
-    sources = tuple(words.energy_source(outcome.scenario).split("; "))
-    notes = (f"{words.EXACT}.",)
+    sources = tuple(words.stability_source(outcome.scenario).split("; "))
+    notes = (f"{words.onset_method(outcome.scenario).capitalize()}.",)
     return Chart("margin", "Stability margin", mass, axis, tuple(marks), _alt(outcome, value, largest), notes, sources)
 
 
@@ -45,8 +47,20 @@ def _curve(family, ignition):
     masses = family.masses(POINTS, ignition)
     if not masses.size:
         return masses, masses
-    margin = np.asarray(equilibrium_at_temperature(family.bodies(masses), ignition).margin)
-    return masses, np.where(margin >= LOWEST, margin, np.nan)
+    return masses, _on_axis(family.margins(masses, ignition))
+
+
+@lru_cache(maxsize=32)
+def _approximate(family, ignition):
+    """The same in the post-Newtonian approximation."""
+    masses = family.masses(POINTS, ignition)
+    if not masses.size:
+        return masses, masses
+    return masses, _on_axis(np.asarray(equilibrium_at_temperature(family.bodies(masses), ignition).margin))
+
+
+def _on_axis(margin):
+    return np.where(margin >= LOWEST, margin, np.nan)
 
 
 def _alt(outcome, value, largest):

@@ -1,40 +1,47 @@
 """The stability margin over mass and ignition temperature."""
 
-from dataclasses import replace
 from functools import lru_cache
 
 import numpy as np
 
-from massdash.charts.chart import Axis, Chart, Map, Point
-from massdash.charts.masses import COLDEST, HEAVIEST, HOTTEST, LIGHTEST_OF_ALL, mass_limits
+from massdash.charts.chart import Axis, Chart, Line, Map, Point
+from massdash.charts.masses import COLDEST, HEAVIEST, HOTTEST, LIGHTEST_OF_ALL, Family, family, mass_limits
 from massdash.constants import M_SUN
-from massdash.errors import ComputationError
 from massdash.model import words
 from massdash.numerals import numeral
-from massdash.physics.post_newtonian import Body, equilibrium_at_temperature
+from massdash.physics import eos
+from massdash.physics.onset import maximum_mass
+from massdash.physics.post_newtonian import eddington_beta
 
 LEVELS = (0.0, 0.5, 0.9)
 _CELL_X, _CELL_Y = 0.025, 0.015  # width of a cell in decades of mass and of temperature
 _LIGHTEST_MU, _HEAVIEST_MU = 0.5, 2.0
 
 
-def margin_map(outcome):
-    """The Chart of the margin, cut at -1, with contours; left of and below the zero contour a star ignites."""
+def margin_map(outcome, *, post_newtonian=False):
+    """The Chart of the margin, cut at -1, with contours; left of and below the zero contour a star ignites.
+
+    ``post_newtonian`` adds the line of zero margin in that approximation.
+    """
     scenario, matter = outcome.scenario, outcome.workings.matter
     limits = mass_limits(outcome)
-    x, y, values = _direct(matter, limits) if matter.body.background > 0 else _rescaled(matter)
+    x, y, values = _direct(outcome, limits) if matter.body.background > 0 else _rescaled(matter)
     axis = Axis("Stability margin", "", "linear", (-1.0, 1.0))
     ignition = outcome.workings.stability.ignition
-    marks = (
+    marks = [
         Map("margin", axis, x, y, np.maximum(values, -1.0), LEVELS, "diverging"),
         Point("star", scenario.label, scenario.number("mass"), ignition, "present", handle="star"),
-    )
+    ]
+    if post_newtonian and not matter.body.background > 0:
+        temperatures = np.geomspace(COLDEST, HOTTEST, 61)
+        masses = maximum_mass(matter.mu, temperatures, matter.body.rotation) / M_SUN
+        marks.append(Line("zero_pn", "zero, post-Newtonian", masses, temperatures, 6, 1.2))
     mass, temperature = (
         Axis("Mass", "solMass", "log", limits),
         Axis("Ignition temperature", "K", "log", (COLDEST, HOTTEST)),
     )
-    sources = tuple(words.energy_source(scenario).split("; "))
-    notes = (f"{words.EXACT}. Values below -1 are shown as -1.",)
+    sources = tuple(words.stability_source(scenario).split("; "))
+    notes = (f"{words.onset_method(scenario).capitalize()}. Values below -1 are shown as -1.",)
     return Chart(
         "map", "Margin over mass and ignition", mass, temperature, marks, _alt(outcome, ignition), notes, sources
     )
@@ -62,9 +69,8 @@ def _scaled_plane(rotation):
     rotation, so that a change of composition costs no more than a shift of the axes."""
     mass = _centres(LIGHTEST_OF_ALL * _LIGHTEST_MU**2, HEAVIEST * _HEAVIEST_MU**2, _CELL_X)
     temperature = _centres(COLDEST / _HEAVIEST_MU, HOTTEST / _LIGHTEST_MU, _CELL_Y)
-    body = Body(10.0 ** mass[None, :] * M_SUN, 1.0, rotation)
-    margin = equilibrium_at_temperature(body, 10.0 ** temperature[:, None]).margin
-    return mass, temperature, margin.astype(np.float32)
+    margin = Family(1.0, rotation, 0.0, 0.0).margins(10.0 ** mass[None, :], 10.0 ** temperature[:, None])
+    return mass, temperature, np.nan_to_num(margin, nan=-np.inf).astype(np.float32)
 
 
 def _rescaled(matter):
@@ -83,15 +89,11 @@ def _covering(centres, low, high, cell):
     return slice(int(inside[0]), int(inside[-1]) + 1)
 
 
-def _direct(matter, limits):
+def _direct(outcome, limits):
     """The same computed cell by cell, coarser, for stars in a background; cells that are not covered stay empty."""
+    matter = outcome.workings.matter
     x, y = np.linspace(*np.log10(limits), 61), np.linspace(np.log10(COLDEST), np.log10(HOTTEST), 61)
-    mass, temperature = 10.0 ** ((x[1:] + x[:-1]) / 2), 10.0 ** ((y[1:] + y[:-1]) / 2)
-    values = np.full((60, 60), np.nan)
-    for row, one in enumerate(temperature):
-        try:
-            state = equilibrium_at_temperature(replace(matter.body, mass=mass * M_SUN), one)
-        except ComputationError:
-            continue  # colder than any covered configuration: the whole row stays empty
-        values[row] = np.where(matter.covers(state.density), state.margin, np.nan)
-    return tuple(limits), (COLDEST, HOTTEST), values
+    mass, temperature = 10.0 ** ((x[1:] + x[:-1]) / 2)[None, :], 10.0 ** ((y[1:] + y[:-1]) / 2)[:, None]
+    margin = np.nan_to_num(family(outcome).margins(mass, temperature), nan=-np.inf)
+    density = eos.density(temperature, eddington_beta(mass * M_SUN, matter.mu), matter.mu)
+    return tuple(limits), (COLDEST, HOTTEST), np.where(matter.covers(density), margin, np.nan)

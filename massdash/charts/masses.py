@@ -6,7 +6,7 @@ import numpy as np
 
 from massdash.constants import M_SUN
 from massdash.model.structure import COVERED_DILUTION
-from massdash.physics import eos
+from massdash.physics import eos, relativistic
 from massdash.physics.post_newtonian import Body, eddington_beta
 
 #: Range of mass axes [Msun]; a lighter star widens it downwards.
@@ -38,8 +38,18 @@ class Family(NamedTuple):
         return masses
 
     def bodies(self, masses):
-        """The Body of the stars of these masses [Msun]."""
+        """The Body of the stars of these masses [Msun], for the post-Newtonian functions."""
         return Body(masses * M_SUN, self.mu, self.rotation, self.background)
+
+    def margins(self, masses, temperature):
+        """Stability margins in full relativity of stars of these masses [Msun] at a central temperature [K], any
+        shapes that broadcast; NaN beyond the table, where all are far past their onset."""
+        mass, temperature = np.broadcast_arrays(masses * M_SUN, np.asarray(temperature, float))
+        known = relativistic.covers(mass, self.mu, temperature)
+        result = np.full(mass.shape, np.nan)
+        arguments = (mass[known], self.mu, temperature[known], self.rotation, self.background)
+        result[known] = relativistic.at_temperature(*arguments).margin
+        return result
 
 
 def family(outcome):

@@ -2,12 +2,15 @@
 
 from dataclasses import dataclass
 
+import numpy as np
+
 from massdash.constants import L_SUN, M_SUN, YEAR
+from massdash.errors import ComputationError
 from massdash.model import words
 from massdash.physics import opacity
 from massdash.physics.composition import hydrogen_of_weight
 from massdash.physics.evolution import EXHAUSTED, contraction_time, mixed_burning_time, nuclear_timescale
-from massdash.physics.onset import weight_for
+from massdash.physics.relativistic import weight_for
 
 _TIMES = ("nuclear_timescale", "contraction_time", "hydrogen_lifetime", "time_to_onset", "lifetime", "assembly_rate")
 _CONTRACTION = "binding energy over luminosity, from a wide start, fixed mass"
@@ -25,8 +28,12 @@ class Life:
 
 
 def hydrogen_at_onset(body, temperature, metals):
-    """Mass fraction X at which a burning star of fixed central temperature meets the onset; below 0 when never."""
-    return hydrogen_of_weight(weight_for(body.mass, temperature, body.rotation, body.background), metals)
+    """Mass fraction X at which a burning star of fixed central temperature meets the onset; negative when never."""
+    try:
+        weight = weight_for(body.mass, temperature, body.rotation, body.background)
+    except ComputationError:
+        weight = np.full(np.shape(body.mass), np.inf)  # the background holds up stars of any weight
+    return hydrogen_of_weight(weight, metals)
 
 
 def life(scenario, matter, stability, state, ledger):

@@ -2,12 +2,13 @@
 
 from dataclasses import dataclass
 
-from massdash.constants import M_SUN, R_SUN, C
+from massdash.constants import M_SUN, R_SUN
 from massdash.errors import ComputationError
 from massdash.model import words
-from massdash.physics import composition, eos
-from massdash.physics.onset import maximum_mass, maximum_mass_leading, onset, onset_leading
-from massdash.physics.post_newtonian import SHEDDING, Body, Equilibrium, equilibrium_at_temperature
+from massdash.physics import composition, eos, relativistic
+from massdash.physics.family import Star
+from massdash.physics.onset import maximum_mass_leading, onset_leading
+from massdash.physics.post_newtonian import SHEDDING, Body
 
 #: Taken while ignition temperatures cannot be computed; typical of a metal-free star that has settled [K].
 ASSUMED_IGNITION = 1.5e8
@@ -33,11 +34,11 @@ class Matter:
 
 @dataclass(frozen=True, eq=False)
 class Stability:
-    """The onset (None where not covered), the ignition temperature and the state at ignition (None likewise)."""
+    """The onset and the state at the ignition temperature, None where they are not covered; ``ignition`` in K."""
 
-    onset: Equilibrium | None
+    onset: Star | None
     ignition: float
-    igniting: Equilibrium | None
+    igniting: Star | None
 
     @property
     def settles(self):
@@ -57,39 +58,36 @@ def matter(scenario, ledger):
     return Matter(scenario.hydrogen, helium, metals, mu, body)
 
 
-def _put_onset(ledger, scenario, state, ending, method, other=None, note=""):
-    source = words.energy_source(scenario)
-    values = {
-        "temperature": lambda e: e.temperature,
-        "density": lambda e: e.density,
-        "energy": lambda e: e.energy,
-        "radius": lambda e: e.radius / R_SUN,
-        "compactness": lambda e: e.compactness,
-    }
-    for what, of in values.items():
-        ledger.put(f"onset_{what}{ending}", of(state), method, source, other=other and of(other), note=note)
+_ONSET = {
+    "temperature": lambda state: state.temperature,
+    "density": lambda state: state.density,
+    "energy": lambda state: state.energy,
+    "radius": lambda state: state.radius / R_SUN,
+    "compactness": lambda state: state.compactness,
+}
 
 
 def _find_onset(scenario, matter, ledger):
-    """The onset by both roads, written down; None where the background is too dense."""
+    """The onset in full relativity and its closed form, written down; None where the background is too dense."""
     body = matter.body
     leading = onset_leading(body)
-    names = [f"onset_{what}" for what in ("temperature", "density", "energy", "radius", "compactness")]
     if not matter.covers(leading.density):
-        ledger.leave([*names, *(f"{name}_pn" for name in names)], words.NOT_COVERED)
+        ledger.leave([f"onset_{what}{road}" for road in ("", "_pn") for what in _ONSET], words.NOT_COVERED)
         return None
     second = onset_leading(Body(body.mass, body.mu, body.rotation, body.background, second_order=True))
-    exact = onset(body)
-    drop = 1.13 * exact.beta
-    relativity = f"full general relativity lowers the temperature by about {100 * drop:.2g} per cent"
-    pairs = exact.temperature > eos.PAIR_TEMPERATURE
-    if pairs:
+    found = relativistic.onset(body.mass, body.mu, body.rotation, body.background)
+    pairs = ""
+    if found.temperature > eos.PAIR_TEMPERATURE:
+        pairs = "pairs, not included yet, matter here"
         ledger.warn(
             "The onset lies above 5e8 K, where electron-positron pairs, not included yet, bring collapse earlier."
         )
-    _put_onset(ledger, scenario, exact, "", words.EXACT, note=relativity + ("; pairs matter here" if pairs else ""))
-    _put_onset(ledger, scenario, leading, "_pn", words.LEADING, other=second)
-    return exact
+    for what, of in _ONSET.items():
+        method, source = words.onset_method(scenario), words.stability_source(scenario)
+        ledger.put(f"onset_{what}", of(found), method, source, note=pairs)
+        source = words.energy_source(scenario)
+        ledger.put(f"onset_{what}_pn", of(leading), words.LEADING, source, other=of(second))
+    return found
 
 
 def _find_maximum_mass(scenario, matter, ignition, ledger):
@@ -97,16 +95,17 @@ def _find_maximum_mass(scenario, matter, ignition, ledger):
     source = words.energy_source(scenario)
     arguments = (body.mu, ignition, body.rotation, body.background)
     try:
-        leading = maximum_mass_leading(*arguments)
+        leading, exact = maximum_mass_leading(*arguments), relativistic.maximum_mass(*arguments)
+        second = maximum_mass_leading(*arguments, second_order=True)
     except ComputationError:
-        # a background holds the onset above some temperature however heavy the star; the field's range ends before
-        ledger.leave(["maximum_mass", "maximum_mass_pn"], words.NOT_COVERED)
+        if not body.background > 0:
+            raise
+        ledger.leave(["maximum_mass", "maximum_mass_pn"], words.NO_LARGEST)
         return
     if not matter.covers(onset_leading(Body(leading, *arguments[::2], body.background)).density):
         ledger.leave(["maximum_mass", "maximum_mass_pn"], words.NOT_COVERED)
         return
-    second = maximum_mass_leading(*arguments, second_order=True)
-    ledger.put("maximum_mass", maximum_mass(*arguments) / M_SUN, words.EXACT, source)
+    ledger.put("maximum_mass", exact / M_SUN, words.onset_method(scenario), words.stability_source(scenario))
     ledger.put("maximum_mass_pn", leading / M_SUN, words.LEADING, source, other=second / M_SUN)
 
 
@@ -134,32 +133,29 @@ def stability(scenario, matter, ledger):
 
 
 def _igniting(matter, ignition):
-    """The state at the ignition temperature; None where the background is too dense for one."""
+    """The state at the ignition temperature; None where there is none, or its background is too dense."""
+    body = matter.body
     try:
-        state = equilibrium_at_temperature(matter.body, ignition)
+        state = relativistic.at_temperature(body.mass, body.mu, ignition, body.rotation, body.background)
     except ComputationError:
-        if matter.body.background > 0:
-            return None
-        raise
+        return None
     return state if matter.covers(state.density) else None
 
 
 def _put_margin(scenario, stability, ledger, never):
-    state, source = stability.igniting, words.energy_source(scenario)
-    names = ("stability_margin", "settled_stability_margin", "pulsation_frequency_squared", "growth_time")
+    state, source, method = stability.igniting, words.stability_source(scenario), words.onset_method(scenario)
+    margins = ("stability_margin", "settled_stability_margin")
     if state is None:
-        ledger.leave(names, words.NOT_COVERED)
+        why = words.BEYOND_TABLE if never else words.NOT_COVERED
+        ledger.leave([*margins, "pulsation_frequency_squared", "growth_time"], why)
         return
-    far = "; far outside the post-Newtonian range" if state.compactness > 0.05 else ""
-    for name in names[:2]:
-        ledger.put(name, state.margin, words.EXACT, source, note=never + far)
-    homologous = f"{words.EXACT}, homologous motion"
-    square = state.frequency_squared
-    ledger.put("pulsation_frequency_squared", square, homologous, source, note=never + far)
-    if square < 0:
-        ledger.put("growth_time", (-square) ** -0.5, homologous, source, note=never + far)
+    for name in margins:
+        ledger.put(name, state.margin, method, source, note=never)
+    ledger.put("pulsation_frequency_squared", state.frequency_squared, method, source, note=never)
+    if state.frequency_squared < 0:
+        ledger.put("growth_time", (-state.frequency_squared) ** -0.5, method, source, note=never)
     else:
-        ledger.leave("growth_time", "the star is stable", homologous, source)
+        ledger.leave("growth_time", "the star is stable", method, source)
 
 
 def present(scenario, matter, stability, ledger):
@@ -167,7 +163,7 @@ def present(scenario, matter, stability, ledger):
     if stability.settles is None:
         ledger.leave("settles", words.NOT_COVERED)
     else:
-        ledger.put("settles", float(stability.settles), words.EXACT, words.energy_source(scenario))
+        ledger.put("settles", float(stability.settles), words.onset_method(scenario), words.stability_source(scenario))
     state = stability.igniting if stability.settles else stability.onset
     if state is None:
         ledger.leave(_PRESENT, words.NOT_COVERED)
@@ -175,14 +171,16 @@ def present(scenario, matter, stability, ledger):
     if state.temperature > eos.PAIR_TEMPERATURE:
         ledger.warn("The centre is hotter than 5e8 K, where electron-positron pairs, not included yet, matter.")
     _put_gas(matter, state, ledger)
-    source = words.energy_source(scenario)
-    ledger.put("central_temperature", state.temperature, words.EXACT, source)
-    ledger.put("central_density", state.density, words.EXACT, source)
-    ledger.put("radius", state.radius / R_SUN, words.EXACT, source)
-    mass = (matter.body.mass + state.energy / C**2) / M_SUN
-    ledger.put("gravitational_mass", mass, words.EXACT, source)
-    ledger.put("binding_energy", state.energy, words.EXACT, source)
-    ledger.put("compactness", state.compactness, words.EXACT, source)
+    values = {
+        "central_temperature": state.temperature,
+        "central_density": state.density,
+        "radius": state.radius / R_SUN,
+        "gravitational_mass": state.gravitational_mass / M_SUN,
+        "binding_energy": state.energy,
+        "compactness": state.compactness,
+    }
+    for name, value in values.items():
+        ledger.put(name, value, words.RELATIVISTIC, words.RELATIVITY_SOURCE)
     return state
 
 

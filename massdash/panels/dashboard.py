@@ -8,7 +8,7 @@ from importlib.resources import files as package_files
 import ipywidgets
 
 from massdash import model
-from massdash.charts import CHARTS, energy_chart
+from massdash.charts import CHARTS, OVERLAID
 from massdash.errors import MassdashError
 from massdash.panels import reading
 from massdash.panels.controls import SHOWN, Controls
@@ -35,6 +35,7 @@ class Dashboard:
         self.controls = Controls(self.scenario, self._changed, self._released)
         self.label = ipywidgets.Text(self.scenario.label, description="Label", continuous_update=False)
         self.terms = ipywidgets.Checkbox(False, description="Show the terms of the energy", indent=False)
+        self.approximate = ipywidgets.Checkbox(False, description="Overlay the post-Newtonian forms", indent=False)
         self.charts = LiveCharts(height=256)
         self.headline, self.status = ipywidgets.HTML(), ipywidgets.HTML()
         self.warnings, self.others, self.table = ipywidgets.HTML(), ipywidgets.HTML(), ipywidgets.HTML()
@@ -42,7 +43,8 @@ class Dashboard:
         self._later = Later(self._catch_up)
         self._setting_label = False
         self.label.observe(self._relabelled, "value")
-        self.terms.observe(lambda change: self._redraw(), "value")
+        for switch in (self.terms, self.approximate):
+            switch.observe(lambda change: self._redraw(), "value")
         self.charts.on_event(self._pointed)
         self.widget = _arranged(self)
         self._redraw()
@@ -57,8 +59,11 @@ class Dashboard:
         self._later.soon()
 
     def chart(self, key):
-        """One figure of the present outcome, with the energy's terms when they are asked for."""
-        return energy_chart(self.outcome, terms=self.terms.value) if key == "energy" else CHARTS[key](self.outcome)
+        """One figure of the present outcome, with what the two switches ask for."""
+        wishes = {"terms": self.terms.value} if key == "energy" else {}
+        if key in OVERLAID:
+            wishes["post_newtonian"] = self.approximate.value
+        return CHARTS[key](self.outcome, **wishes)
 
     def say(self, sentence, *, error=False):
         """Write the status line."""
@@ -138,12 +143,14 @@ def _arranged(board):
     style = ipywidgets.HTML(f"<style>{(package_files('massdash.panels') / 'dashboard.css').read_text()}</style>")
     filing = board.filing
     files = ipywidgets.HBox([filing.upload, filing.save])
+    switches = [board.terms, board.approximate]
     column = _box(
         ipywidgets.VBox,
         "controls",
-        [filing.choice, board.label, *board.controls.fields.values(), board.terms, board.others, files, board.status],
+        [filing.choice, board.label, *board.controls.fields.values(), *switches, board.others, files, board.status],
     )
-    carry = _box(ipywidgets.HBox, "carry", [filing.figure, filing.format, filing.width, filing.export, filing.download])
+    carried = [filing.figure, filing.format, filing.width, filing.export, filing.download]
+    carry = _box(ipywidgets.HBox, "carry", carried)
     stage = _box(ipywidgets.VBox, "stage", [board.charts, carry])
     main = _box(ipywidgets.HBox, "main", [column, stage])
     quantities = ipywidgets.Accordion([board.table], titles=("All quantities",), selected_index=0)

@@ -67,7 +67,7 @@ def lookup(beta, sigma, names, *, derivatives=False):
     result = table().stars(root, sigma.ravel(), names, derivatives=derivatives)
     if derivatives:
         result[len(names) : 2 * len(names)] /= 2.0 * root
-    return result.reshape(-1, *beta.shape)
+    return result.reshape(result.shape[0], *beta.shape)
 
 
 def direct(beta, sigma, *, tolerance=1e-12, panels=4, basis=None):

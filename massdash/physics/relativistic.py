@@ -17,7 +17,7 @@ from scipy.special import wrightomega
 
 from massdash.constants import K_B, M_SUN, M_U, C, G
 from massdash.errors import ComputationError
-from massdash.physics import family
+from massdash.physics import eos, family
 from massdash.physics.barotropes import demand
 from massdash.physics.polytrope import standard_model
 from massdash.physics.post_newtonian import EDDINGTON_MASS, K2, K_BACKGROUND
@@ -29,6 +29,8 @@ BACKGROUND_SHIFT = 2.0 * K_BACKGROUND / K2
 ROTATION_SHIFT = 2.0 / 3.0
 #: -xi^2 theta' of the n = 3 sphere, the table's mass at sigma = beta = 0.
 LANE_EMDEN_MASS = standard_model().mass
+#: A mean molecular weight above that of any mixture here (pure metals have 2).
+HEAVIEST = 2.0
 #: Gamma_crit - 4/3 over sigma at leading order.
 CRITICAL = 2.6325
 
@@ -76,15 +78,16 @@ def _log_mass(beta, theta, rest, rest_u, rest_t):
     return value, by_u, rest_t / rest - 2.0 * theta * (3.0 - 1.5 * beta) / quotient
 
 
-def _balance(beta, rows, rows_u, rows_t, support, thin):
+def _balance(beta, rows, rows_u, rows_t, support, thin, power=-3.0):
     """ln(critical/(stiffness + support)), 0 at the onset, and its derivatives; ``support`` is that of rotation and
-    ``thin`` that of the background, which goes with the density as theta^-3 z."""
+    ``thin`` that of the background, which goes with the density as z theta^power: -3 at given weight, 1 at given
+    temperature."""
     square, stiff, response = rows
     stiffness = beta * stiff
     critical = stiffness - response * square
     supported = stiffness + support + thin
     slopes = []
-    for slope, own, moved in ((rows_u, beta * (beta - 1.0) * stiff, thin), (rows_t, 0.0, -3.0 * thin)):
+    for slope, own, moved in ((rows_u, beta * (beta - 1.0) * stiff, thin), (rows_t, 0.0, power * thin)):
         d_stiffness = own + beta * slope[1]
         d_critical = d_stiffness - slope[2] * square - response * slope[0]
         slopes.append(d_critical / critical - (d_stiffness + moved) / supported)
@@ -147,7 +150,7 @@ def _from_temperature(w, theta):
 
 
 def _sought(w, theta, inside):
-    beta, sigma = np.empty((2, *w.shape))
+    w, theta, beta, sigma = np.asarray(w), np.asarray(theta), np.empty(w.shape), np.empty(w.shape)
     beta[inside], sigma[inside] = _from_temperature(w[inside], theta[inside])
     w, theta = w[~inside], theta[~inside]
     beta[~inside] = _beta(_of_mass(w, lambda u: theta + 0.0 * u, 0.0, "rest mass and central temperature"))
@@ -163,6 +166,21 @@ def support(density, rotation=0.0, background=0.0):
 def _supported(beta, sigma, mu, rotation, background):
     density = family.central_density(beta, family.central_theta(beta, sigma)) * mu**4
     return family.stars(beta, sigma, mu, support(density, rotation, background))
+
+
+def covers(rest_mass, mu, temperature):
+    """Whether the table holds the star of this rest mass [g] and central temperature [K]; where it does not, the others
+    integrate directly, which takes milliseconds a star. Only stars far beyond their onset, or heavier than 1e8 Msun,
+    are outside."""
+    rest_mass, mu, temperature = _accept(rest_mass=rest_mass, mu=mu, temperature=temperature)
+    w = _w(rest_mass, mu)
+    return family.table().inverse.covers(np.sqrt(w), _theta(mu, temperature) / w)
+
+
+def covers_density(rest_mass, mu, density):
+    """The same for a central rest-mass density [g cm-3], by the temperature that the standard model has there."""
+    rest_mass, mu, density = _accept(rest_mass=rest_mass, mu=mu, density=density)
+    return covers(rest_mass, mu, eos.temperature(density, _beta(_start(_w(rest_mass, mu))), mu))
 
 
 def at_temperature(rest_mass, mu, temperature, rotation=0.0, background=0.0):
@@ -264,8 +282,7 @@ def maximum_mass(mu, temperature, rotation=0.0, background=0.0):
         value, by_u, _ = _balance(beta, *rows, turning, _thin(beta, theta, mu, background))
         return value / by_u
 
-    # at leading order CRITICAL theta z = 1/(6 z) + 2/3 T/|W| + z times what the background adds at z = 1
-    pull = CRITICAL * theta - _thin(0.5, theta, mu, background)
+    pull = _pull(mu, temperature, background)
     if not np.all(pull > 0):
         raise ComputationError("there is no maximum mass at this temperature: the background holds up every star")
     half = turning / (2.0 * pull)
@@ -273,6 +290,54 @@ def maximum_mass(mu, temperature, rotation=0.0, background=0.0):
     beta = _beta(u)
     rest = family.values(beta, family.sigma_of_theta(beta, theta), ("rest_mass",))[0]
     return EDDINGTON_MASS * M_SUN * np.exp(_log_mass(beta, theta, rest, 0.0, 0.0)[0]) / mu**2
+
+
+def _pull(mu, temperature, background):
+    """What is left of relativity's pull, CRITICAL theta, beside the background's push per z; not positive where stars
+    of any mass are held up. At leading order pull z = 1/(6 z) + 2/3 T/|W| at the onset."""
+    theta = _theta(mu, temperature)
+    return CRITICAL * theta - _thin(0.5, theta, mu, background)
+
+
+def weight_for(rest_mass, temperature, rotation=0.0, background=0.0):
+    """Mean molecular weight at which the star of ``rest_mass`` [g] meets the onset at just ``temperature`` [K].
+
+    Infinite where not even HEAVIEST brings it there, as when rotation or background alone hold it up.
+    """
+    temperature, rotation, background = _accept(temperature=temperature, rotation=rotation, background=background)
+    falls = np.asarray(_pull(HEAVIEST, temperature, background) > 0)
+    least = np.full(temperature.shape, np.inf)  # mass that meets the onset when it is made of HEAVIEST
+    least[falls] = maximum_mass(HEAVIEST, temperature[falls], rotation[falls], background[falls])
+    rest_mass, temperature, rotation, background, least = np.broadcast_arrays(
+        *_accept(rest_mass=rest_mass), temperature, rotation, background, least
+    )
+    exists = rest_mass >= least
+    weight = np.full(rest_mass.shape, np.inf)
+    if np.any(exists):
+        weight[exists] = _weight_for(*(one[exists] for one in (rest_mass, temperature, rotation, background)))
+    return weight
+
+
+def _weight_for(rest_mass, temperature, rotation, background):
+    """Newton's method for ln z and ln theta: M0 T^2 = (M0 mu^2) (T/mu)^2 is known, and mu is T over theta."""
+    heat, turning = _theta(1.0, temperature), ROTATION_SHIFT * rotation
+    target = np.log(rest_mass / (EDDINGTON_MASS * M_SUN)) + 2.0 * np.log(heat)
+
+    def step(place):
+        u, t = place
+        theta = np.exp(t)
+        beta, *rows = _rows(u, theta, ("rest_mass", *_BALANCE))
+        mass, mass_u, mass_t = _log_mass(beta, theta, *(row[0] for row in rows))
+        thin = _thin(beta, theta, heat / theta, background)
+        value, by_u, by_t = _balance(beta, *(row[1:] for row in rows), turning, thin, power=1.0)
+        excess, mass_t = mass + 2.0 * t - target, mass_t + 2.0
+        determinant = mass_u * by_t - mass_t * by_u
+        return np.stack([excess * by_t - mass_t * value, mass_u * value - excess * by_u]) / determinant
+
+    # leading order without help: M0 T^2 ~ theta^2/beta^2 and CRITICAL theta = beta^2/6
+    beta = np.minimum(6.0 * CRITICAL * np.exp(0.5 * target), 0.5)
+    start = np.stack([np.log((1.0 - beta) / beta), np.log(beta**2 / (6.0 * CRITICAL))])
+    return heat / np.exp(_newton(step, start, "rest mass and onset temperature, whatever its weight")[1])
 
 
 # ------------------------------------------------------------------------------------------------ constant entropy

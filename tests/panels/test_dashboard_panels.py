@@ -4,6 +4,7 @@ import json
 import re
 from datetime import UTC, datetime
 
+import numpy as np
 import pytest
 
 from massdash import model
@@ -134,6 +135,15 @@ def test_the_terms_appear_on_request_on_screen_and_in_exports(board):
     assert len(board.chart("energy").marks) < 7
     board.terms.value = True
     assert {"term_internal", "term_newtonian", "term_first_order"} <= {mark.key for mark in board.chart("energy").marks}
+
+
+def test_the_post_newtonian_forms_are_laid_over_on_request(board):
+    overlays = {"energy": "locus_pn", "margin": "margin_pn", "map": "zero_pn"}
+    for key, mark in overlays.items():
+        assert mark not in [one.key for one in board.chart(key).marks]
+    board.approximate.value = True
+    for key, mark in overlays.items():
+        assert np.isfinite(board.chart(key)[mark].y).any()
 
 
 def test_the_star_on_the_map_can_be_moved(board):
