@@ -1,7 +1,6 @@
 /* One number: slider, typed entry, unit, range, message. Python decides what is accepted; this shows it. */
 
 const LOG_POSITIONS = 1000;
-let fields = 0;
 
 function make(tag, className, parent, attributes = {}) {
   const node = document.createElement(tag);
@@ -59,7 +58,8 @@ class Field {
       model,
       sent: 0,
       held: false,
-      id: `massdash-field-${++fields}`,
+      // Each field loads its own copy of this module, so that a counter would give all of them the same name.
+      id: `massdash-field-${Math.random().toString(36).slice(2)}`,
       ended: new AbortController(),
     });
     this.get = (name) => model.get(name);
@@ -118,7 +118,7 @@ class Field {
     on(window, "pointercancel", this.release);
     on(this.slider, "input", this.slide);
     on(this.slider, "keydown", this.stepByKey);
-    on(this.text, "change", () => this.send("text", this.text.value));
+    on(this.text, "change", this.commit);
     on(this.text, "keydown", this.typeKey);
     on(this.none, "change", () => this.send(this.none.checked ? "none" : "some"));
     on(this.reset, "click", () => this.send("reset"));
@@ -166,7 +166,16 @@ class Field {
     this.slide();
   }
 
+  /** Notebooks swallow the change that Enter makes in a plain page, so it is taken here too; what was sent is not sent
+      again when the field loses its focus. */
+  commit() {
+    if (this.text.value === this.committed) return;
+    this.committed = this.text.value;
+    this.send("text", this.text.value);
+  }
+
   typeKey(event) {
+    if (event.key === "Enter") this.commit();
     if (event.key === "Escape") this.text.value = typedForm(this.get("number"));
   }
 
@@ -223,7 +232,7 @@ class Field {
     this.slider.disabled = this.text.disabled = none;
     this.slider.max = String(this.track.count);
     this.slider.value = String(this.track.position(number));
-    this.text.value = typedForm(number);
+    this.text.value = this.committed = typedForm(number);
     this.last = number;
     this.speak(number);
   }
