@@ -87,16 +87,34 @@ class Dashboard:
         self.table.value = reading.table(self.outcome)
 
     # ------------------------------------------------------------------------------------------------ a person's moves
-    def _changed(self, name, value):
+    def _attempt(self, scenario_changes, refused):
+        """Show the scenario with these changes; True when that worked, else ``refused(sentence)`` tells why not.
+
+        Errors in callbacks of a kernel vanish unless they are shown on purpose; one that nobody foresaw is shown as well
+        as raised into the log.
+        """
         try:
-            self._take(replace(self.scenario, **{name: FIELDS[name].with_unit(value)}))
+            self._take(replace(self.scenario, **scenario_changes))
         except MassdashError as error:
-            self.controls.refuse(name, str(error), self.scenario)
-            return
+            refused(str(error))
+            return False
+        except Exception as error:
+            refused(f"an error in the program left everything as it was ({type(error).__name__}: {error})")
+            raise
         self.controls.quiet()
-        self.status.value = ""
-        if not self.controls.dragging:
-            self._later.soon()
+        return True
+
+    def _refuse(self, sentence):
+        self.say(sentence, error=True)
+
+    def _changed(self, name, value):
+        def refused(sentence):
+            self.controls.refuse(name, sentence, self.scenario)
+
+        if self._attempt({name: FIELDS[name].with_unit(value)}, refused):
+            self.status.value = ""
+            if not self.controls.dragging:
+                self._later.soon()
 
     def _released(self):
         self._later.soon()
@@ -104,13 +122,10 @@ class Dashboard:
     def _relabelled(self, change):
         if self._setting_label:
             return
-        try:
-            self._take(replace(self.scenario, label=change["new"]))
-        except MassdashError as error:
-            self.say(str(error), error=True)
+        if self._attempt({"label": change["new"]}, self._refuse):
+            self._later.soon()
+        else:
             self._show_label()
-            return
-        self._later.soon()
 
     def _show_label(self):
         self._setting_label = True
@@ -119,20 +134,13 @@ class Dashboard:
 
     def _pointed(self, kind, chart, handle, x, y):
         """A drag of the star on the map, or a click there, moves it; positions outside the allowed ranges do not."""
-        if chart != "map":
+        place = dict(zip(_MAP_FIELDS, (x, y), strict=True))
+        if chart != "map" or not all(FIELDS[name].low <= value <= FIELDS[name].high for name, value in place.items()):
             return
-        inside = all(FIELDS[name].low <= v <= FIELDS[name].high for name, v in zip(_MAP_FIELDS, (x, y), strict=True))
-        if not inside:
-            return
-        moved = {name: FIELDS[name].with_unit(v) for name, v in zip(_MAP_FIELDS, (x, y), strict=True)}
-        try:
-            self._take(replace(self.scenario, **moved))
-        except MassdashError as error:
-            self.say(str(error), error=True)
-            return
-        self.controls.show(self.scenario)
-        if kind != "drag":
-            self._later.soon()
+        if self._attempt({name: FIELDS[name].with_unit(value) for name, value in place.items()}, self._refuse):
+            self.controls.show(self.scenario)
+            if kind != "drag":
+                self._later.soon()
 
 
 _MAP_FIELDS = ("mass", "ignition_temperature")

@@ -54,6 +54,9 @@ class Filing:
             self._say(action())
         except MassdashError as error:
             self._say(str(error), error=True)
+        except Exception as error:
+            self._say(f"an error in the program ({type(error).__name__}: {error})", error=True)
+            raise
 
     def _opened(self, change):
         if not change["new"]:

@@ -84,6 +84,19 @@ def test_a_failed_computation_leaves_everything_as_it_was():
     assert board.controls.fields["mass"].message == "no answer for such a star"
 
 
+def test_an_unforeseen_error_is_shown_and_raised():
+    def evaluate(scenario):
+        if scenario.number("mass") > 1e6:
+            raise ZeroDivisionError("somewhere")
+        return model.evaluate(scenario)
+
+    board = Dashboard(filing.choices([]), evaluate=evaluate)
+    with pytest.raises(ZeroDivisionError):
+        board.controls.fields["mass"].value = 2e6
+    assert "ZeroDivisionError" in board.controls.fields["mass"].message
+    assert board.controls.fields["mass"].value == board.scenario.number("mass")
+
+
 def test_choosing_a_built_in_scenario_moves_all_controls(board):
     for text in board.filing.choice.options:
         board.filing.choice.value = text
