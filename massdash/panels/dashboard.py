@@ -90,8 +90,8 @@ class Dashboard:
     def _attempt(self, scenario_changes, refused):
         """Show the scenario with these changes; True when that worked, else ``refused(sentence)`` tells why not.
 
-        Errors in callbacks of a kernel vanish unless they are shown on purpose; one that nobody foresaw is shown as well
-        as raised into the log.
+        Errors in callbacks of a kernel vanish unless they are shown on purpose; one that nobody foresaw is shown and
+        raised into the log.
         """
         try:
             self._take(replace(self.scenario, **scenario_changes))
