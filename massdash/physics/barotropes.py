@@ -115,6 +115,12 @@ class Isentrope:
         raise ComputationError("isentrope: no temperature found for an enthalpy")
 
 
+def _demand_index(polytrope):
+    given = polytrope.gamma is not None
+    good = polytrope.index > 0 or (polytrope.index == 0 and given)
+    demand("index", polytrope.index, good, "a positive number, or 0 when gamma is given")
+
+
 @dataclass(frozen=True, eq=False)
 class EnergyPolytrope:
     """P = K epsilon^(1 + 1/n) (Tooper 1964, ApJ 140, 434); Gamma_1 as for a slow adiabat unless ``gamma`` is given."""
@@ -124,7 +130,7 @@ class EnergyPolytrope:
     gamma: float | None = None
 
     def __post_init__(self):
-        demand("index", self.index, self.index > 0, "a positive number")
+        _demand_index(self)
         demand("sigma", self.sigma, (self.sigma > 0) & np.isfinite(self.sigma), "a positive, finite number")
 
     @property
@@ -159,7 +165,7 @@ class RestPolytrope:
     gamma: float | None = None
 
     def __post_init__(self):
-        demand("index", self.index, self.index > 0, "a positive number")
+        _demand_index(self)
         good = (self.sigma > 0) & (self.sigma * self.index < 1)
         demand("sigma", self.sigma, good, "more than 0 and less than 1/n")
 

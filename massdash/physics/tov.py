@@ -8,7 +8,10 @@ fixed nodes beforehand, and only two quadratures are coupled,
 with r = A xi and m = 4 pi A^3 (epsilon_c/c^2) v. With h = depth (1 - q)^2 everything is smooth in q from the centre
 (xi^2 ~ q) to the surface (q = 1). The panels of q are solved one after another by collocation at Gauss nodes, iterated
 to rounding; in the first, v ~ q^(3/2) is integrated with that weight, so that the centre needs no series. Panel ends
-are good to order 2 ``nodes``. The step from Newtonian to relativistic stars is smooth down to sigma = 0.
+are good to nearly order 2 ``nodes`` in the width of the panels. Where these are so many that the second one decides,
+whose ends lie a factor 2 apart, the error is linear in the width and falls 34-fold with every node ((3 + 8^(1/2))^2,
+from the branch point of q^(3/2)): below 1e-17 for 12. The step from Newtonian to relativistic stars is smooth down to
+sigma = 0.
 """
 
 from dataclasses import dataclass, fields
@@ -20,7 +23,7 @@ from massdash.errors import ComputationError
 from massdash.physics.barotropes import State
 
 NODES, PANELS, MOST_PANELS = 12, 4, 128
-_ITERATIONS = 200
+_ITERATIONS, _CLOSE = 200, 5e-15
 
 
 @dataclass(frozen=True, eq=False)
@@ -176,7 +179,7 @@ class _Panel:
             volume = 0.5 * root * rate
             mean = width**1.5 * rule.root @ (volume * self.state.energy) / update**1.5
             change, square = np.max(np.abs(update / square - 1.0), initial=0.0), update
-            if change < 3e-16 * 16:
+            if change < _CLOSE:
                 break
         else:
             raise _TooCoarse("its centre was not resolved")
@@ -203,7 +206,7 @@ class _Panel:
             shell = 0.5 * np.sqrt(update) * rate * self.state.energy
             enclosed = start[1] + width * rule.plain @ shell
             change, square = np.max(np.abs(update / square - 1.0), initial=0.0), update
-            if change < 3e-16 * 16:
+            if change < _CLOSE:
                 break
         else:
             raise _TooCoarse("its balance was not resolved")
