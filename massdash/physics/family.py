@@ -70,18 +70,19 @@ def lookup(beta, sigma, names, *, derivatives=False):
     return result.reshape(result.shape[0], *beta.shape)
 
 
-def direct(beta, sigma, *, tolerance=1e-12, panels=4, basis=None):
-    """NAMES, stacked (names, N), by direct integration.
+def direct(beta, sigma, *, tolerance=1e-12, panels=4, basis=None, pulsating=True):
+    """NAMES, stacked (names, N), by direct integration; the first four only when not ``pulsating``.
 
     ``mass``, ``rest_mass``, ``radius``, ``binding`` as in tov.Structure; ``frequency_squared`` of the lowest mode in
     GM/R^3; ``stiffness`` is <Gamma_1 - 4/3>/beta_c with the weight of that mode, and ``response`` the ratio of
     <Gamma_1> - Gamma_crit to frequency_squared.
     """
     star = structure(Isentrope(beta, sigma), tolerance=tolerance, panels=panels)
-    mode = pulsation(star, basis=basis)
-    square = mode.frequency_squared[0]
-    response = (mode.stiffness - mode.critical) / square
-    return np.stack([star.mass, star.rest_mass, star.radius, star.binding, square, mode.stiffness / beta, response])
+    found = [star.mass, star.rest_mass, star.radius, star.binding]
+    if pulsating:
+        mode = pulsation(star, basis=basis)
+        found += [mode.frequency_squared[0], mode.stiffness / beta, mode.response]
+    return np.stack(found)
 
 
 def values(beta, sigma, names=NAMES, *, derivatives=False):
@@ -100,7 +101,8 @@ def _integrated(beta, sigma, names, derivatives):
     rows = [NAMES.index(name) for name in names]
     if not derivatives:
         parts = [slice(start, start + _BATCH) for start in range(0, beta.size, _BATCH)]
-        return np.concatenate([direct(beta[part], sigma[part])[rows] for part in parts], axis=1)
+        pulsating = max(rows) >= NAMES.index("frequency_squared")
+        return np.concatenate([direct(beta[part], sigma[part], pulsating=pulsating)[rows] for part in parts], axis=1)
     d_beta, d_sigma = _STEP * beta * (1.0 - beta), _STEP * sigma
     stars = np.stack([beta, beta + d_beta, beta - d_beta, beta, beta])
     other = np.stack([sigma, sigma, sigma, sigma + d_sigma, sigma - d_sigma])

@@ -31,7 +31,8 @@ class Pulsation:
 
     ``frequency_squared`` (modes, N) in units of GM/R^3, rising, and ``error`` of the same shape and unit, by how much
     it would grow without the last three functions (what is left of the error is smaller still). ``stiffness`` and
-    ``critical`` (N,) are Gamma_1 - 4/3 and its least stable value, both weighted with the lowest mode.
+    ``critical`` (N,) are Gamma_1 - 4/3 and its least stable value, both weighted with the lowest mode; ``response`` is
+    their difference over ``frequency_squared``, which stays regular where both vanish.
     ``coefficients`` (basis, N) of the lowest mode's f in the polynomials of ``recurrence``.
     """
 
@@ -39,6 +40,7 @@ class Pulsation:
     error: np.ndarray
     stiffness: np.ndarray
     critical: np.ndarray
+    response: np.ndarray
     coefficients: np.ndarray
     recurrence: tuple
 
@@ -168,10 +170,10 @@ def _solve(terms, modes, count):
     strain += terms.lever * np.einsum("ikn,in->kn", base.slopes, lowest)
     weight = np.sum(terms.pressure * strain**2, axis=0)
     stiffness = np.sum(stiff * strain**2, axis=0) / weight
-    critical = stiffness - values[:, 0] / weight
+    critical, response = stiffness - values[:, 0] / weight, 1.0 / (weight * terms.unit)
     size = (np.abs(stiffness) + np.abs(critical)) * weight * terms.unit
     error = _without_last(energy, values, vectors) * terms.unit
-    result = Pulsation(values.T * terms.unit, error, stiffness, critical, lowest, (base.shifts, base.norms))
+    result = Pulsation(values.T * terms.unit, error, stiffness, critical, response, lowest, (base.shifts, base.norms))
     return result, size
 
 

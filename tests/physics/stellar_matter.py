@@ -90,8 +90,8 @@ def eigenvalue_by_shooting(matter, radius, mass, low, high):
             lambda h, y: rhs(h, y, square),
             (h, stop),
             [small, v, 1.0, -3.0 * gamma * p],
-            rtol=1e-11,
-            atol=1e-16,
+            rtol=3e-10,
+            atol=1e-15,
             what="pulsation",
         )
         xi, v, zeta, delta = found.y[:, -1]

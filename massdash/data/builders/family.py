@@ -12,7 +12,7 @@ import numpy as np
 
 from massdash.physics import series
 from massdash.physics.family import NAMES, central_theta, direct
-from massdash.physics.relativistic import LANE_EMDEN_MASS
+from massdash.physics.points import LANE_EMDEN_MASS
 from massdash.physics.roots import secant
 
 BETA = (2e-4, 0.7)
