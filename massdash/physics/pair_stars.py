@@ -36,7 +36,6 @@ def stars(temperature, density, helium, metals, rotation=0.0, background=0.0):
     unit = 4.0 * np.pi * length**3 * matter.energy_density
     size = found.radius * length
     support = relativistic.support(density, rotation, background)
-    response = (mode.stiffness - mode.critical) / mode.frequency_squared[0]
     values = {
         "beta": matter.centre.gas_fraction,
         "sigma": matter.sigma,
@@ -47,7 +46,7 @@ def stars(temperature, density, helium, metals, rotation=0.0, background=0.0):
         "radius": size,
         "energy": unit * matter.sigma * found.binding * C**2,
         "compactness": found.compactness,
-        "frequency_squared": (mode.frequency_squared[0] + support / response) * found.compactness * C**2 / size**2,
+        "frequency_squared": (mode.frequency_squared[0] + support / mode.response) * found.compactness * C**2 / size**2,
         "stiffness": mode.stiffness,
         "critical": mode.critical - support,
     }

@@ -18,12 +18,14 @@ def integrals(t, eta):
     """Number, pressure and kinetic energy of one kind and their derivatives by ln t and eta, by the double exponential
     rule over momentum in 30 digits; from the textbook integrals (Cox & Giuli 1968, ch. 24), not from a potential."""
     sums = [[mp.mpf(0)] * 3 for _ in range(3)]
-    middle, step = mp.sqrt(t * (t + 2)), mp.mpf(1) / 64
-    for k in range(-192, 193):
+    middle, step = mp.sqrt(t * (t + 2)), mp.mpf(1) / 48
+    for k in range(-144, 145):
         u = k * step
         p = middle * mp.exp(mp.pi / 2 * mp.sinh(u))
         energy = mp.sqrt(1 + p * p)
         kinetic = p * p / (energy + 1)
+        if kinetic / t > eta + 90 or p < middle * mp.mpf(10) ** -14:
+            continue  # beyond 30 digits
         filled = 1 / (mp.exp(kinetic / t - eta) + 1)
         weight = step * mp.pi / 2 * mp.cosh(u) * p**3 / mp.pi**2
         slope = filled * (1 - filled)
