@@ -92,7 +92,10 @@ def pulsation(structure, modes=1, basis=None, tolerance=1e-8):
         if np.all(result.error <= tolerance * np.maximum(size, np.abs(result.frequency_squared))):
             return result
         count += max(4, count // 3)
-    raise ComputationError(f"radial pulsation: mode {modes} was not found to {tolerance:.1e} with {MOST} functions")
+    raise ComputationError(
+        f"radial pulsation: mode {modes} was not found to {tolerance:.1e} with {MOST} functions; the mode is too high, "
+        "or the star too close to the limit of sigma"
+    )
 
 
 def critical_index(structure, basis=24):

@@ -129,10 +129,7 @@ def _brief(rest_mass, mu, temperature):
 
 
 def at_density(rest_mass, mu, density, rotation=0.0, background=0.0):
-    """The Star of ``rest_mass`` [g] with central rest-mass ``density`` [g cm-3]: a point of the locus of equilibria.
-
-    Raises ComputationError where a star of this mass cannot be so dense.
-    """
+    """The Star of ``rest_mass`` [g] with central rest-mass ``density`` [g cm-3]: a point of the locus of equilibria."""
     rest_mass, mu, density, rotation, background = points.accept(
         rest_mass=rest_mass, mu=mu, density=density, rotation=rotation, background=background
     )
