@@ -1,5 +1,6 @@
 """Running servers for the tests of the dashboard in a browser."""
 
+import socket
 import sys
 from dataclasses import replace
 
@@ -45,6 +46,12 @@ def dashboard():
         yield running
 
 
+def free_port():
+    """A port that nobody listens on; another server of this kind may run on the usual one."""
+    with socket.create_server(("127.0.0.1", 0)) as listening:
+        return listening.getsockname()[1]
+
+
 @pytest.fixture(scope="session")
 def lab(tmp_path_factory):
     """JupyterLab in a folder with a copy of the dashboard's notebook, without any settings of the user."""
@@ -56,5 +63,7 @@ def lab(tmp_path_factory):
     own = dict.fromkeys(
         ("HOME", "JUPYTER_CONFIG_DIR", "JUPYTER_DATA_DIR", "IPYTHONDIR", "JUPYTER_RUNTIME_DIR"), str(home)
     )
-    with started(LAB, address=r"http://127\.0\.0\.1:\d+/lab", cwd=folder, **own) as running:
+    port = free_port()
+    where = [f"--port={port}", "--ServerApp.port_retries=0"]
+    with started([*LAB, *where], address=rf"http://127\.0\.0\.1:{port}/lab", cwd=folder, **own) as running:
         yield replace(running, address=f"{running.address}/tree/{NOTEBOOK.name}?token={TOKEN}")

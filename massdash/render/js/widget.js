@@ -36,7 +36,7 @@ class Page {
     ];
     this.subscriptions.forEach(([name, handle]) => model.on(name, handle));
     const restyle = () => {
-      this.theme = null;
+      this.themeSure = false; // the old one serves until the next paint
       this.wake();
     };
     this.pageWatcher = new MutationObserver(restyle);
