@@ -6,7 +6,7 @@ eqs. 131-133). All functions take and return arrays in cgs. Pairs, which this fi
 """
 
 import numpy as np
-from scipy.special import wrightomega
+from scipy.special import wrightomega, xlogy
 
 from massdash.constants import HBAR, K_B, M_E, M_U, RADIATION
 from massdash.physics.composition import electrons_per_baryon, hydrogen
@@ -94,17 +94,16 @@ def specific_entropy(rho, temperature, helium, metals):
     du = T ds + (P/rho^2) d rho holds exactly with the functions above.
     """
     temperature = np.asarray(temperature, float)
-    abundance = (
+    kinds = (
         (hydrogen(helium, metals), 2.0, M_U),
         (np.asarray(helium, float) / 4.0, 1.0, 4.0 * M_U),
         (electrons_per_baryon(helium, metals), 2.0, M_E),
     )
     thermal = M_U / rho * (K_B * temperature / (2.0 * np.pi * HBAR**2)) ** 1.5
     entropy = 4.0 / 3.0 * RADIATION * temperature**3 * M_U / (rho * K_B)
-    for number, weight, mass in abundance:
-        present = number > 0
-        phase_space = np.where(present, weight * mass**1.5 * thermal / np.where(present, number, 1.0), 1.0)
-        entropy = entropy + np.where(present, number * (2.5 + np.log(phase_space)), 0.0)
+    for number, weight, mass in kinds:
+        number = np.maximum(number, 0.0)  # rounding may leave less than nothing
+        entropy = entropy + number * (2.5 + np.log(weight * mass**1.5 * thermal)) - xlogy(number, number)
     return entropy
 
 

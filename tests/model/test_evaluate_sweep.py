@@ -1,4 +1,4 @@
-"""Every acceptable star has an outcome: whatever the input, no failure, nothing that is not finite, a reason for gaps."""
+"""Every acceptable star has an outcome: no input makes it fail, nothing is not finite, gaps have a reason."""
 
 import json
 import math

@@ -120,3 +120,12 @@ def test_entropy_of_pure_hydrogen_gas():
     gas = np.sum(2.5 + np.log(2 / (number * wavelength**3)))
     radiation = eos.radiation_entropy(eos.gas_fraction(rho, temperature, 0.5), 0.5)
     assert eos.specific_entropy(rho, temperature, 0.0, 0.0) == pytest.approx(gas + radiation, rel=1e-12)
+
+
+def test_entropy_where_a_kind_of_particle_is_all_but_absent():
+    """n ln n goes to nothing with n: traces, none at all, and what rounding leaves below none."""
+    arguments = 4.0, 2.1e8
+    none = eos.specific_entropy(*arguments, 0.0, 0.0)
+    assert eos.specific_entropy(*arguments, np.array([5e-324, 2e-309, 1e-30]), 0.0) == pytest.approx(none, rel=1e-14)
+    without_hydrogen = eos.specific_entropy(*arguments, 1.0, 0.0)
+    assert eos.specific_entropy(*arguments, 1.0 + 2.2e-16, 0.0) == pytest.approx(without_hydrogen, rel=1e-14)
