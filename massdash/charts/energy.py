@@ -30,7 +30,7 @@ def energy_chart(outcome, *, terms=False, post_newtonian=False):
     with ``post_newtonian`` the locus in that approximation. Where the methods do not cover the scenario the chart is
     empty and says so.
     """
-    onset, star = outcome.workings.stability.onset, outcome.workings.present
+    onset, star = outcome.workings.stability.onset_without_pairs, outcome.workings.present
     density = Axis("Central density", "g / cm3", "log")
     if onset is None or star is None:
         said = {"alt": f"Binding energy: {words.NOT_COVERED}.", "notes": (words.NOT_COVERED,)}

@@ -4,7 +4,7 @@ from dataclasses import dataclass
 
 from massdash.constants import M_SUN, R_SUN
 from massdash.errors import ComputationError
-from massdash.model import words
+from massdash.model import pairs, words
 from massdash.physics import composition, eos, relativistic
 from massdash.physics.family import Star
 from massdash.physics.onset import maximum_mass_leading, onset_leading
@@ -34,9 +34,11 @@ class Matter:
 
 @dataclass(frozen=True, eq=False)
 class Stability:
-    """The onset and the state at the ignition temperature, None where they are not covered; ``ignition`` in K."""
+    """The onset, the same without pairs, and the state at the ignition temperature, None where they are not covered;
+    ``ignition`` in K."""
 
     onset: Star | None
+    onset_without_pairs: Star | None
     ignition: float
     igniting: Star | None
 
@@ -68,26 +70,36 @@ _ONSET = {
 
 
 def _find_onset(scenario, matter, ledger):
-    """The onset in full relativity and its closed form, written down; None where the background is too dense."""
+    """The onset in full relativity, the same without pairs, and its closed form, written down; None twice where the
+    background is too dense."""
     body = matter.body
     leading = onset_leading(body)
     if not matter.covers(leading.density):
         ledger.leave([f"onset_{what}{road}" for road in ("", "_pn") for what in _ONSET], words.NOT_COVERED)
-        return None
+        return None, None
     second = onset_leading(Body(body.mass, body.mu, body.rotation, body.background, second_order=True))
-    found = relativistic.onset(body.mass, body.mu, body.rotation, body.background)
-    pairs = ""
-    if found.temperature > eos.PAIR_TEMPERATURE:
-        pairs = "pairs, not included yet, matter here"
-        ledger.warn(
-            "The onset lies above 5e8 K, where electron-positron pairs, not included yet, bring collapse earlier."
-        )
+    plain = relativistic.onset(body.mass, body.mu, body.rotation, body.background)
+    found = _put_onset(scenario, matter, plain, pairs.onset(matter), ledger)
     for what, of in _ONSET.items():
-        method, source = words.onset_method(scenario), words.stability_source(scenario)
-        ledger.put(f"onset_{what}", of(found), method, source, note=pairs)
-        source = words.energy_source(scenario)
-        ledger.put(f"onset_{what}_pn", of(leading), words.LEADING, source, other=of(second))
-    return found
+        ledger.put(f"onset_{what}_pn", of(leading), words.LEADING, words.energy_source(scenario), other=of(second))
+    return found, plain
+
+
+def _put_onset(scenario, matter, plain, paired, ledger):
+    """Write the onset with its bound; returns the Star behind the values."""
+    hot = pairs.matter_at(plain.temperature)
+    value, other, note = plain, paired, pairs.BOUND
+    method, source = words.onset_method(scenario), words.stability_source(scenario)
+    if paired is None:
+        note = pairs.why_none(matter.body) if hot else ""
+        if hot:
+            ledger.warn(f"The onset lies above 5e8 K: {note}.")
+    elif hot:
+        value, other, note, method = paired, plain, pairs.INCLUDED, words.ONSET_WITH_PAIRS
+        source = f"{source}; {words.PAIR_SOURCE}"
+    for what, of in _ONSET.items():
+        ledger.put(f"onset_{what}", of(value), method, source, note=note, other=other and of(other))
+    return value
 
 
 def _find_maximum_mass(scenario, matter, ignition, ledger):
@@ -105,8 +117,19 @@ def _find_maximum_mass(scenario, matter, ignition, ledger):
     if not matter.covers(onset_leading(Body(leading, *arguments[::2], body.background)).density):
         ledger.leave(["maximum_mass", "maximum_mass_pn"], words.NOT_COVERED)
         return
-    ledger.put("maximum_mass", exact / M_SUN, words.onset_method(scenario), words.stability_source(scenario))
+    _put_maximum_mass(scenario, exact / M_SUN, pairs.maximum_mass(matter, ignition), ignition, ledger)
     ledger.put("maximum_mass_pn", leading / M_SUN, words.LEADING, source, other=second / M_SUN)
+
+
+def _put_maximum_mass(scenario, plain, paired, ignition, ledger):
+    method, source = words.onset_method(scenario), words.stability_source(scenario)
+    if paired is None:
+        ledger.put("maximum_mass", plain, method, source)
+    elif pairs.matter_at(ignition):
+        source = f"{source}; {words.PAIR_SOURCE}"
+        ledger.put("maximum_mass", paired / M_SUN, words.ONSET_WITH_PAIRS, source, note=pairs.INCLUDED, other=plain)
+    else:
+        ledger.put("maximum_mass", plain, method, source, note=pairs.BOUND, other=paired / M_SUN)
 
 
 def ignition_of(scenario):
@@ -121,9 +144,9 @@ def stability(scenario, matter, ledger):
     ignition = ignition_of(scenario)
     if not given:
         ledger.warn("No ignition temperature is given: 1.5e8 K is assumed until burning rates are built in.")
-    found = _find_onset(scenario, matter, ledger)
+    found, plain = _find_onset(scenario, matter, ledger)
     _find_maximum_mass(scenario, matter, ignition, ledger)
-    result = Stability(found, ignition, _igniting(matter, ignition))
+    result = Stability(found, plain, ignition, _igniting(matter, ignition))
     never = "" if result.settles is not False else "never reached: collapse sets in first"
     method = words.GIVEN if given else words.ASSUMED
     for name in ("ignition_temperature", "settled_temperature"):
@@ -169,7 +192,7 @@ def present(scenario, matter, stability, ledger):
         ledger.leave(_PRESENT, words.NOT_COVERED)
         return None
     if state.temperature > eos.PAIR_TEMPERATURE:
-        ledger.warn("The centre is hotter than 5e8 K, where electron-positron pairs, not included yet, matter.")
+        ledger.warn("The centre is hotter than 5e8 K: its structure and margin leave out electron-positron pairs.")
     _put_gas(matter, state, ledger)
     values = {
         "central_temperature": state.temperature,

@@ -3,6 +3,10 @@
 GAS = "ideal gas of nuclei and electrons plus radiation, no electron-positron pairs"
 RELATIVISTIC = "full general relativity, isentropic star of gas and radiation"
 ONSET = "full general relativity, isentropic star of gas and radiation, zero of the lowest pulsation mode"
+ONSET_WITH_PAIRS = (
+    "full general relativity, isentropic star of gas, radiation and electron-positron pairs, zero of the lowest "
+    "pulsation mode"
+)
 TRIAL = "post-Newtonian energy functional, first order, exact beta and Gamma_1, n = 3 shape"
 LEADING = "post-Newtonian, first order, leading order in beta; the bound is the second-order root"
 GIVEN = "given with the scenario"
@@ -12,6 +16,7 @@ COMPOSITION_SOURCE = "Kippenhahn, Weigert & Weiss 2012, ch. 4"
 GAS_SOURCE = "Chandrasekhar 1939, ch. II"
 RELATIVITY_SOURCE = "Tolman 1939, Phys. Rev. 55, 364; Oppenheimer & Volkoff 1939, Phys. Rev. 55, 374"
 PULSATION_SOURCE = "Chandrasekhar 1964, ApJ 140, 417; Bardeen, Thorne & Meltzer 1966, ApJ 145, 505"
+PAIR_SOURCE = "Kippenhahn, Weigert & Weiss 2012, ch. 15"
 EFFECTIVE_SOURCE = "Ledoux 1945, ApJ 102, 143"
 ENERGY_SOURCE = "Chandrasekhar 1964, ApJ 140, 417; Shapiro & Teukolsky 1983, ch. 6 and 17"
 ROTATION_SOURCE = "Baumgarte & Shapiro 1999, ApJ 526, 941"

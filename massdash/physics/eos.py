@@ -11,7 +11,7 @@ from scipy.special import wrightomega, xlogy
 from massdash.constants import HBAR, K_B, M_E, M_U, RADIATION
 from massdash.physics.composition import electrons_per_baryon, hydrogen
 
-PAIR_TEMPERATURE = 5e8  # K; above it pairs change Gamma_1 - 4/3 of these stars by more than a per cent
+PAIR_TEMPERATURE = 5e8  # K; above it pairs change the onset of collapse by more than about ten per cent
 
 
 def gas_pressure(rho, temperature, mu):
