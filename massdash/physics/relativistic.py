@@ -24,6 +24,8 @@ from massdash.physics.series import BLOCK
 
 #: A mean molecular weight above that of any mixture here (pure metals have 2).
 HEAVIEST = 2.0
+#: One below that of any mixture here (pure hydrogen has 1/2).
+LIGHTEST = 0.25
 
 
 # ------------------------------------------------------------------------------------------------ at a given rest mass
@@ -213,17 +215,19 @@ def _pull(mu, temperature, background):
 def weight_for(rest_mass, temperature, rotation=0.0, background=0.0):
     """Mean molecular weight at which the star of ``rest_mass`` [g] meets the onset at just ``temperature`` [K].
 
-    Infinite where not even HEAVIEST brings it there, as when rotation or background alone hold it up.
+    Infinite where not even HEAVIEST brings it there, as when rotation or background alone hold it up; LIGHTEST where
+    stars of any weight are beyond their onset.
     """
     temperature, rotation, background = points.accept(temperature=temperature, rotation=rotation, background=background)
     falls = np.asarray(_pull(HEAVIEST, temperature, background) > 0)
-    least = np.full(temperature.shape, np.inf)  # mass that meets the onset when it is made of HEAVIEST
-    least[falls] = maximum_mass(HEAVIEST, temperature[falls], rotation[falls], background[falls])
-    rest_mass, temperature, rotation, background, least = np.broadcast_arrays(
-        *points.accept(rest_mass=rest_mass), temperature, rotation, background, least
+    least, most = np.full(temperature.shape, np.inf), np.full(temperature.shape, np.inf)  # made of the two
+    for mass, mu in ((least, HEAVIEST), (most, LIGHTEST)):
+        mass[falls] = maximum_mass(mu, temperature[falls], rotation[falls], background[falls])
+    rest_mass, temperature, rotation, background, least, most = np.broadcast_arrays(
+        *points.accept(rest_mass=rest_mass), temperature, rotation, background, least, most
     )
-    exists = rest_mass >= least
-    weight = np.full(rest_mass.shape, np.inf)
+    exists = (rest_mass >= least) & (rest_mass <= most)
+    weight = np.where(rest_mass > most, LIGHTEST, np.inf)
     if np.any(exists):
         weight[exists] = _weight_for(*(one[exists] for one in (rest_mass, temperature, rotation, background)))
     return weight

@@ -271,3 +271,20 @@ def test_arguments_broadcast():
     assert star.radius.shape == (2, 3)
     assert relativistic.brief(np.array([1e4, 1e5])[:, None] * M_SUN, np.array([0.5, 0.6, 0.7]), 1e7).shape == (4, 2, 3)
     assert relativistic.onset(np.array([]), MU).radius.shape == (0,)
+
+
+def test_weight_that_brings_the_onset():
+    mass, temperature = np.geomspace(1e4, 1e6, 5) * M_SUN, 1e8
+    weight = relativistic.weight_for(mass, temperature, 1e-3)
+    within = (weight > relativistic.LIGHTEST) & np.isfinite(weight)
+    assert np.any(within)
+    found = relativistic.onset(mass[within], weight[within], 1e-3).temperature
+    np.testing.assert_allclose(found, temperature, rtol=1e-10)
+
+
+def test_weight_where_none_or_any_will_do():
+    """One heavy star among others must not spoil their answers."""
+    weight = relativistic.weight_for(np.array([1e3, 1e5, 1.4e7]) * M_SUN, np.array([1e7, 2e8, 5.7e8]))
+    assert weight[0] == np.inf
+    assert 0.5 < weight[1] < 0.7
+    assert weight[2] == relativistic.LIGHTEST
