@@ -37,7 +37,7 @@ def energy_chart(outcome, *, terms=False, post_newtonian=False):
         return Chart("energy", "Binding energy", density, Axis("Energy", "erg"), **said)
     body = outcome.workings.matter.body
     trial = equilibrium_at_density(body, star.density)
-    barrier = _barrier(body, trial)
+    barrier = _barrier(body, trial) if outcome.workings.stability.settles else None
     rho = np.geomspace(_BELOW * star.density, _highest(onset, barrier), POINTS)
     parts = energy_terms(body, trial, rho)
     depth = abs(float(onset.energy))
@@ -102,7 +102,7 @@ def _term_lines(rho, parts):
 
 def _alt(outcome, star, onset):
     scenario = outcome.scenario
-    settled = star is not onset
+    settled = outcome.workings.stability.settles
     where = "in the minimum of its own curve" if settled else "at the onset of collapse, where no barrier is left"
     return (
         f"Energy against central density for {numeral(scenario.number('mass'))} Msun: {scenario.label} lies {where}, "

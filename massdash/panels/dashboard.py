@@ -36,7 +36,7 @@ class Dashboard:
         self.label = ipywidgets.Text(self.scenario.label, description="Label", continuous_update=False)
         self.terms = ipywidgets.Checkbox(False, description="Show the terms of the energy", indent=False)
         self.approximate = ipywidgets.Checkbox(False, description="Overlay the post-Newtonian forms", indent=False)
-        self.charts = LiveCharts(height=256)
+        self.charts = LiveCharts(fill=True)
         self.headline, self.status = ipywidgets.HTML(), ipywidgets.HTML()
         self.warnings, self.others, self.table = ipywidgets.HTML(), ipywidgets.HTML(), ipywidgets.HTML()
         self.filing = Filing(offered, accept=self.show, outcome=lambda: self.outcome, chart=self.chart, say=self.say)

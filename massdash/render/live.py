@@ -35,7 +35,8 @@ def checked_event(event, handles):
 
 
 class LiveCharts(anywidget.AnyWidget):
-    """Draws charts in a grid of ``columns`` columns (1 or 2), each ``height`` CSS pixels high.
+    """Draws charts in a grid of ``columns`` columns (1 or 2), each ``height`` CSS pixels high; with ``fill`` two rows
+    fill the window instead.
 
     The browser writes ``event`` only; ``structure`` and ``frame`` are Python's.
     """
@@ -44,6 +45,7 @@ class LiveCharts(anywidget.AnyWidget):
     _css = bundle.stylesheet("charts")
     columns = traitlets.Int(2, min=1, max=2).tag(sync=True)
     height = traitlets.Int(300, min=120, max=2000).tag(sync=True)
+    fill = traitlets.Bool(False).tag(sync=True)
     structure = traitlets.Dict().tag(sync=True)
     frame = traitlets.Dict().tag(sync=True)
     event = traitlets.Dict().tag(sync=True, echo_update=False)

@@ -33,6 +33,7 @@ class Page {
       ["change:frame", fresh],
       ["change:columns", wake],
       ["change:height", wake],
+      ["change:fill", wake],
     ];
     this.subscriptions.forEach(([name, handle]) => model.on(name, handle));
     const restyle = () => {
@@ -41,6 +42,7 @@ class Page {
     };
     this.pageWatcher = new MutationObserver(restyle);
     for (const node of [document.body, document.documentElement]) this.pageWatcher.observe(node, { attributes: true });
+    addEventListener("resize", wake, { signal: this.ended.signal });
     matchMedia("(prefers-color-scheme: dark)").addEventListener("change", restyle, { signal: this.ended.signal });
   }
 
@@ -53,7 +55,9 @@ class Page {
     this.gone = true;
   }
 
+  /** Of one chart: as Python says, or such that two rows and what stands around them fill the window. */
   get height() {
+    if (this.model.get("fill")) return Math.round(Math.max(240, Math.min(560, (innerHeight - 256) / 2)));
     return Math.max(120, Math.min(2000, this.model.get("height") || 300));
   }
 
