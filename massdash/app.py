@@ -15,9 +15,9 @@ WARM_UP = "; ".join(
     [
         "import massdash.panels",
         "from massdash import evaluate",
-        "from massdash.charts import all_charts",
+        "from massdash.charts import CHARTS",
         "from massdash.scenario import DEFAULT_NAME, builtin",
-        "all_charts(evaluate(builtin(DEFAULT_NAME)))",
+        "outcome = evaluate(builtin(DEFAULT_NAME)); [chart(outcome) for chart in CHARTS.values()]",
     ]
 )
 
