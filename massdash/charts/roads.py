@@ -8,28 +8,22 @@ from functools import lru_cache
 from typing import NamedTuple
 
 import numpy as np
-from numpy.polynomial import chebyshev
 
 from massdash.charts.chart import Axis, Chart, Line, Rule, Span
 from massdash.charts.masses import HEAVIEST, LIGHTEST
 from massdash.constants import M_SUN
-from massdash.errors import ComputationError
 from massdash.model import words
 from massdash.numerals import numeral
-from massdash.physics import eos, family, relativistic
-from massdash.physics.barotropes import Isentrope
+from massdash.physics import eos, relativistic
 from massdash.physics.onset import onset, onset_leading
 from massdash.physics.post_newtonian import Body
-from massdash.physics.tov import structure
+from massdash.physics.turning import turning_temperature
 
 POINTS = 101
 #: Masses at which the turning point is sought by direct integration.
 TURNING_POINTS = 11
 #: T_PN/T_GR - 1 over beta of the leading order in the limit of large masses.
 GUIDE = 1.13
-# The rest mass along an isentrope is interpolated in ln T at so many points, so far to both sides of the
-# post-Newtonian onset, which is too hot by 0.25 in ln T at worst.
-_NODES, _REACH = 17, 0.5
 
 _ROADS = {"leading": "leading order", "exact": "exact β and Γ₁", "second": "second order"}
 _NOTES = (
@@ -94,38 +88,6 @@ def _turning(mu):
     marginal = relativistic.onset(masses * M_SUN, mu)
     guess = onset_leading(Body(masses * M_SUN, mu)).temperature
     return masses, turning_temperature(marginal, mu, guess) / marginal.temperature - 1.0
-
-
-def turning_temperature(star, mu, guess):
-    """Central temperature [K] of the largest rest mass at the entropy of each ``star``, near ``guess`` [K]; (N,).
-
-    From the masses of directly integrated stars and nothing else: of ``star`` only the entropy counts. Equal entropy is
-    as good as equal rest mass to compare roads at, because next to its maximum the mass does not change.
-    Raises ComputationError where the mass does not turn near ``guess``.
-    """
-    steps = chebyshev.chebpts1(_NODES)
-    temperature = guess * np.exp(_REACH * steps)[:, None]
-    mass = _log_mass(relativistic.along_entropy(star, mu, temperature))
-    slopes = chebyshev.chebder(chebyshev.chebfit(steps, mass - mass[0], _NODES - 1))
-    return guess * np.exp(_REACH * np.array([_descent(slope) for slope in slopes.T]))
-
-
-def _log_mass(stars):
-    """ln of the rest mass, up to a constant, by direct integration."""
-    matter = Isentrope(stars.beta.ravel(), stars.sigma.ravel())
-    energy = stars.density / matter.rest_fraction.reshape(stars.density.shape)
-    rest = structure(matter, tolerance=1e-13).rest_mass.reshape(energy.shape)
-    return np.log(family.length_unit(stars.sigma, energy) ** 3 * energy * rest)
-
-
-def _descent(slope):
-    """Where in -1..1 a Chebyshev series falls through zero."""
-    roots = chebyshev.chebroots(slope)
-    real = roots[(roots.imag == 0) & (np.abs(roots.real) < 1)].real
-    falling = real[chebyshev.chebval(real, chebyshev.chebder(slope)) < 0]
-    if falling.size != 1:
-        raise ComputationError("the rest mass at constant entropy has no single maximum near the guess")
-    return falling[0]
 
 
 def _lines(roads, scale):

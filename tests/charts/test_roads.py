@@ -6,10 +6,11 @@ import pytest
 import massdash as md
 from massdash.charts import CHARTS, PRINTED, all_charts, roads_chart, roads_over_beta
 from massdash.charts.chart import Line
-from massdash.charts.roads import GUIDE, TURNING_POINTS, differences, turning_temperature
+from massdash.charts.roads import GUIDE, TURNING_POINTS, differences
 from massdash.constants import M_SUN
 from massdash.errors import ComputationError
 from massdash.physics import relativistic
+from massdash.physics.turning import turning_temperature
 
 MASSES = np.array([1e3, 1e5, 1e7]) * M_SUN
 MU = 0.59
