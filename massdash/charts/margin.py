@@ -12,6 +12,7 @@ from massdash.physics.post_newtonian import equilibrium_at_temperature
 
 POINTS = 161
 LOWEST = -1.0  # the axis ends here; a star below it is drawn on the edge with its value beside it
+_STEP = 0.1  # the axis' upper end is a multiple of it: 1, or more where rotation, background or a light star ask for it
 
 
 def margin_chart(outcome, *, post_newtonian=False):
@@ -19,7 +20,8 @@ def margin_chart(outcome, *, post_newtonian=False):
     ignition = outcome.workings.stability.ignition
     masses, margin = _curve(family(outcome), ignition)
     mass = Axis("Mass", "solMass", "log", mass_limits(outcome))
-    axis = Axis("Stability margin", "", "linear", (LOWEST, 1.0))
+    value = outcome.number("stability_margin")
+    axis = Axis("Stability margin", "", "linear", (LOWEST, _top(margin, value)))
     marks = [Span("unstable", "collapses before it ignites", "y", None, 0.0)]
     if masses.size:
         marks.append(Line("margin", f"at {numeral(ignition, 2)} K", masses, margin, 0))
@@ -28,7 +30,6 @@ def margin_chart(outcome, *, post_newtonian=False):
     largest = outcome.number("maximum_mass")
     if largest is not None and mass.limits[0] <= largest <= mass.limits[1]:
         marks.append(Rule("maximum_mass", f"largest mass {numeral(largest)}", "x", largest, 6))
-    value = outcome.number("stability_margin")
     if value is not None:
         text = (
             outcome.scenario.label
@@ -57,6 +58,11 @@ def _approximate(family, ignition):
     if not masses.size:
         return masses, masses
     return masses, _on_axis(np.asarray(equilibrium_at_temperature(family.bodies(masses), ignition).margin))
+
+
+def _top(margin, value):
+    highest = np.max([1.0, *margin[np.isfinite(margin)], value or 0.0])
+    return float(np.ceil(highest / _STEP - 1e-9) * _STEP)
 
 
 def _on_axis(margin):

@@ -43,7 +43,7 @@ def margin_map(outcome, *, post_newtonian=False):
     sources = tuple(words.stability_source(scenario).split("; "))
     notes = (f"{words.onset_method(scenario).capitalize()}. Values below -1 are shown as -1.",)
     return Chart(
-        "map", "Margin over mass and ignition", mass, temperature, marks, _alt(outcome, ignition), notes, sources
+        "map", "Margin over mass and ignition", mass, temperature, tuple(marks), _alt(outcome, ignition), notes, sources
     )
 
 
