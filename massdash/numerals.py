@@ -10,7 +10,9 @@ def numeral(value, digits=3):
     if value is None or not math.isfinite(value):
         return "–"
     rounded = float(f"{value:.{digits - 1}e}")
-    if rounded == 0 or 1e-3 <= abs(rounded) < 1e5:
+    if rounded == 0:
+        return "0"
+    if 1e-3 <= abs(rounded) < 1e5:
         return (
             f"{rounded:.{digits}g}".replace("-", "−")
             if abs(rounded) < 10**digits
@@ -29,8 +31,9 @@ def duration(years, digits=3):
     """A time span in the unit that reads best: ``1.43 Myr``, ``5800 yr``, ``12 days``."""
     if years is None or not math.isfinite(years):
         return "–"
+    rounded = float(f"{years:.{digits - 1}e}")  # what rounds up to a unit is given in that unit
     for size, unit in _SPANS:
-        if years >= size:
+        if rounded >= size:
             return f"{numeral(years / size, digits)} {unit}"
     days = years * 365.25
     return f"{numeral(days, digits)} days" if days >= 1 else f"{numeral(days * 86400, digits)} s"
