@@ -1,8 +1,7 @@
 """Ideal gas of ions and electrons plus radiation, without electron-positron pairs.
 
-Everything follows from beta = P_gas/P (gas over total pressure); exponents are those of Chandrasekhar (1939, ch. II,
-eqs. 131-133). All functions take and return arrays in cgs. Pairs, which this file leaves out, matter above about
-5e8 K.
+Everything follows from beta = P_gas/P (gas over total pressure); exponents are those of Chandrasekhar (1939, ch. II).
+All functions take and return arrays in cgs. Pairs, which this file leaves out, matter above about 5e8 K.
 """
 
 import numpy as np

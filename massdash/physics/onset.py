@@ -13,6 +13,7 @@ from massdash.physics import eos
 from massdash.physics.isentrope import averages
 from massdash.physics.post_newtonian import (
     EDDINGTON_MASS,
+    K1,
     K2,
     K4,
     K5,
@@ -109,7 +110,8 @@ def onset(body):
 
 def maximum_mass_leading(mu, temperature, rotation=0.0, background=0.0, second_order=False):
     """Rest mass [g] whose leading-order onset temperature is ``temperature`` [K]."""
-    single = 4.0 * K4 / K2 * K_B * temperature / (mu * M_U * C**2)  # beta^2 at onset without spin and background
+    # without spin and background, where y = k2 beta/(4 k4) and k1 P_c/rho_c = k2 y c^2, this is beta^2 at onset
+    single = 4.0 * K1 * K4 / K2**2 * K_B * temperature / (mu * M_U * C**2)
 
     def residual(u):
         body = Body(np.exp(u), mu, rotation, background, second_order)

@@ -29,7 +29,7 @@ _VOLUME = 3.0 * _SPHERE.concentration / (4.0 * np.pi)  # R = (volume M/rho_c)^(1
 K1 = 6.0 * _SPHERE.radius * _SPHERE.slope
 K2 = 1.5 * np.cbrt(4.0 * np.pi * _SPHERE.slope / _SPHERE.radius)
 K3 = 1.0 / (2.0 * (2.0 / 3.0) * _SPHERE.inertia * _VOLUME ** (2.0 / 3.0))
-K5 = 0.331211  # Baumgarte & Shapiro 1999, ApJ 526, 941, eq. 4 (from memory; reproduces their critical R/M = 456)
+K5 = 0.331211  # Baumgarte & Shapiro 1999, ApJ 526, 941 (from memory; reproduces their critical R/M = 456)
 K_BACKGROUND = 2.0 * np.pi / 3.0 * _SPHERE.inertia * _VOLUME ** (2.0 / 3.0)
 
 #: Mass scale of the standard model in units of M_sun/mu^2 (Eddington quartic).
@@ -40,7 +40,7 @@ SHEDDING = 0.5 * (8.0 / 27.0) * (2.0 / 3.0) * _SPHERE.inertia / 1.5
 
 
 def critical_index_coefficient(polytrope):
-    """K in Gamma_crit = 4/3 + K 2GM/(Rc^2) for Lane-Emden spheres (Chandrasekhar 1964, ApJ 140, 417, eq. 75)."""
+    """K in Gamma_crit = 4/3 + K 2GM/(Rc^2) for Lane-Emden spheres (Chandrasekhar 1964, ApJ 140, 417)."""
     n = polytrope.index
     relativity = 2.0 * (11.0 - n) / ((n + 1.0) * polytrope.radius**4 * polytrope.slope**3) * polytrope.slope_integral
     return (5.0 - n) / 18.0 * (1.0 + relativity)
@@ -116,12 +116,12 @@ def pull(y, rotation=0.0, dilution=0.0, k5=0.0):
 
 
 def relativity(y, k5=0.0):
-    """What relativity takes from the stiffness, in M c^2: the negative part of d2E/dy2."""
+    """What relativity takes from the stiffness y^2 d2E/dy2, in M c^2."""
     return 2.0 * K4 * y**2 + 6.0 * k5 * y**3
 
 
 def help_from_outside(y, rotation=0.0, dilution=0.0):
-    """What rotation and background add to the stiffness, in M c^2."""
+    """What rotation and background add to the stiffness y^2 d2E/dy2, in M c^2."""
     return y * (2.0 * K2 * rotation + 6.0 * K_BACKGROUND * dilution)
 
 

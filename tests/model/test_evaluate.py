@@ -121,6 +121,17 @@ def test_a_star_that_never_ignites():
     assert "never ignites" in outcome.headline
 
 
+@pytest.mark.parametrize(("share", "settles"), [(0.9999, 1), (1.0001, 0)])
+def test_which_comes_first_is_decided_sharply(share, settles):
+    onset = evaluate(HEAVY)["onset_temperature"]
+    outcome = evaluate(replace(HEAVY, ignition_temperature=share * onset))
+    assert outcome.number("settles") == settles
+    assert (outcome.number("stability_margin") > 0) == settles
+    largest = outcome.number("maximum_mass") / 1e6
+    assert largest == pytest.approx(1 / share, rel=1e-5)
+    assert (largest > 1) == settles
+
+
 def test_a_star_that_burns_into_its_onset():
     outcome = evaluate(replace(HEAVY, mass=1.2e5 * u.Msun))
     assert outcome.fate == "collapse_in_hydrogen_burning"

@@ -4,7 +4,7 @@ import numpy as np
 import pytest
 from slopes import first
 
-from massdash.constants import K_B, M_U, RADIATION
+from massdash.constants import K_B, M_E, M_U, RADIATION, H
 from massdash.physics import eos
 from massdash.physics.composition import mean_molecular_weight
 
@@ -112,14 +112,24 @@ def test_radiation_entropy_is_the_radiations_part_of_the_whole():
     assert eos.radiation_entropy(beta, 0.59) == pytest.approx(direct, rel=1e-13)
 
 
-def test_entropy_of_pure_hydrogen_gas():
-    """Sackur-Tetrode written out with natural logarithms (any textbook): 2.5 + ln(g/n lambda^3) per particle."""
+@pytest.mark.parametrize(
+    ("helium", "particles"),
+    [
+        (0.0, [(1.0, 2, M_U), (1.0, 2, M_E)]),
+        (1.0, [(0.25, 1, 4 * M_U), (0.5, 2, M_E)]),
+        (0.4, [(0.6, 2, M_U), (0.1, 1, 4 * M_U), (0.8, 2, M_E)]),
+    ],
+)
+def test_entropy_of_gas(helium, particles):
+    """Sackur-Tetrode written out (any textbook): 2.5 + ln(g/(n lambda^3)) for each particle."""
     rho, temperature = 1e-4, 1e5
-    number = rho / M_U
-    wavelength = 6.62607015e-27 / np.sqrt(2 * np.pi * np.array([M_U, 9.1093837015e-28]) * K_B * temperature)
-    gas = np.sum(2.5 + np.log(2 / (number * wavelength**3)))
-    radiation = eos.radiation_entropy(eos.gas_fraction(rho, temperature, 0.5), 0.5)
-    assert eos.specific_entropy(rho, temperature, 0.0, 0.0) == pytest.approx(gas + radiation, rel=1e-12)
+    gas = 0.0
+    for number, weight, mass in particles:
+        wavelength = H / np.sqrt(2 * np.pi * mass * K_B * temperature)
+        gas += number * (2.5 + np.log(weight / (rho / M_U * number * wavelength**3)))
+    mu = mean_molecular_weight(helium, 0.0)
+    radiation = eos.radiation_entropy(eos.gas_fraction(rho, temperature, mu), mu)
+    assert eos.specific_entropy(rho, temperature, helium, 0.0) == pytest.approx(gas + radiation, rel=1e-12)
 
 
 def test_entropy_where_a_kind_of_particle_is_all_but_absent():

@@ -1,5 +1,7 @@
 """The guarded solver: a bad start, an endless integration and an answer that is not finite are refused in words."""
 
+from types import SimpleNamespace
+
 import numpy as np
 import pytest
 
@@ -33,3 +35,14 @@ def test_too_many_evaluations():
 def test_blow_up(slope):
     with pytest.raises(ComputationError, match=r"^decay: "):
         integrate(slope, (0, 2), [1.0], most=20_000, **TIGHT)
+
+
+def test_success_with_an_answer_that_is_not_finite(monkeypatch):
+    """Some solvers report success all the same."""
+
+    def lying(*_, **__):
+        return SimpleNamespace(success=True, y=np.array([[1.0, np.nan]]), message="fine")
+
+    monkeypatch.setattr("scipy.integrate.solve_ivp", lying)
+    with pytest.raises(ComputationError, match=r"decay: the integration failed \(fine\)"):
+        integrate(decay, (0, 1), [1.0], **TIGHT)
