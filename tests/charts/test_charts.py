@@ -43,7 +43,7 @@ def test_the_star_lies_in_the_minimum_of_its_own_curve():
     assert star.x / spacing < lowest < star.x * spacing
 
 
-@pytest.mark.parametrize("mass", [7e4, 9e4, 1.2e5])
+@pytest.mark.parametrize("mass", [7e4, 1.1e5, 1.2e5])
 def test_the_barrier_is_the_maximum_of_the_same_curve(mass):
     outcome = evaluate(replace(LANTERN, mass=mass * u.Msun))
     barrier, body = energy_chart(outcome)["barrier"], outcome.workings.matter.body
@@ -51,7 +51,7 @@ def test_the_barrier_is_the_maximum_of_the_same_curve(mass):
     around = barrier.x * np.exp(np.linspace(-0.1, 0.1, 2001))
     own = energy_terms(body, star, around)["total"]
     assert around[np.argmax(own)] == pytest.approx(barrier.x, rel=5e-3)
-    assert own.max() == pytest.approx(barrier.y, rel=1e-4)
+    assert own.max() == pytest.approx(barrier.y, rel=1e-5)
     assert barrier.x > outcome.number("onset_density") > outcome.number("central_density")
 
 
