@@ -19,14 +19,15 @@ class Workings:
     times: object
 
 
-def evaluate(scenario):
+def evaluate(scenario, *, bounds=True):
     """The Outcome of a Scenario: every quantity of ``massdash.quantities``, the fate and the verdict.
 
-    Raises ComputationError when no answer is found for an acceptable scenario.
+    Without ``bounds`` the spread that takes time of its own is left out, which the live dashboard does while a slider
+    moves; all values are the same. Raises ComputationError when no answer is found for an acceptable scenario.
     """
     ledger = Ledger()
     matter = structure.matter(scenario, ledger)
-    stability = structure.stability(scenario, matter, ledger)
+    stability = structure.stability(scenario, matter, ledger, bounds)
     state = structure.present(scenario, matter, stability, ledger)
     times = life.life(scenario, matter, stability, state, ledger)
     pending.fill(ledger)

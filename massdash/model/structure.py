@@ -69,7 +69,7 @@ _ONSET = {
 }
 
 
-def _find_onset(scenario, matter, ledger):
+def _find_onset(scenario, matter, ledger, bounds):
     """The onset in full relativity, the same without pairs, and its closed form, written down; None twice where the
     background is too dense."""
     body = matter.body
@@ -79,7 +79,8 @@ def _find_onset(scenario, matter, ledger):
         return None, None
     second = onset_leading(Body(body.mass, body.mu, body.rotation, body.background, second_order=True))
     plain = relativistic.onset(body.mass, body.mu, body.rotation, body.background)
-    found = _put_onset(scenario, matter, plain, pairs.onset(matter), ledger)
+    wanted = bounds or pairs.matter_at(plain.temperature)
+    found = _put_onset(scenario, matter, plain, pairs.onset(matter) if wanted else None, ledger)
     for what, of in _ONSET.items():
         ledger.put(f"onset_{what}_pn", of(leading), words.LEADING, words.energy_source(scenario), other=of(second))
     return found, plain
@@ -102,7 +103,7 @@ def _put_onset(scenario, matter, plain, paired, ledger):
     return value
 
 
-def _find_maximum_mass(scenario, matter, ignition, ledger):
+def _find_maximum_mass(scenario, matter, ignition, ledger, bounds):
     body = matter.body
     source = words.energy_source(scenario)
     arguments = (body.mu, ignition, body.rotation, body.background)
@@ -117,7 +118,8 @@ def _find_maximum_mass(scenario, matter, ignition, ledger):
     if not matter.covers(onset_leading(Body(leading, *arguments[::2], body.background)).density):
         ledger.leave(["maximum_mass", "maximum_mass_pn"], words.NOT_COVERED)
         return
-    _put_maximum_mass(scenario, exact / M_SUN, pairs.maximum_mass(matter, ignition), ignition, ledger)
+    paired = pairs.maximum_mass(matter, ignition) if bounds or pairs.matter_at(ignition) else None
+    _put_maximum_mass(scenario, exact / M_SUN, paired, ignition, ledger)
     ledger.put("maximum_mass_pn", leading / M_SUN, words.LEADING, source, other=second / M_SUN)
 
 
@@ -138,14 +140,14 @@ def ignition_of(scenario):
     return ASSUMED_IGNITION if given is None else given
 
 
-def stability(scenario, matter, ledger):
+def stability(scenario, matter, ledger, bounds):
     """Onset, ignition, maximum mass and the margin at ignition."""
     given = scenario.ignition_temperature is not None
     ignition = ignition_of(scenario)
     if not given:
         ledger.warn("No ignition temperature is given: 1.5e8 K is assumed until burning rates are built in.")
-    found, plain = _find_onset(scenario, matter, ledger)
-    _find_maximum_mass(scenario, matter, ignition, ledger)
+    found, plain = _find_onset(scenario, matter, ledger, bounds)
+    _find_maximum_mass(scenario, matter, ignition, ledger, bounds)
     result = Stability(found, plain, ignition, _igniting(matter, ignition))
     never = "" if result.settles is not False else "never reached: collapse sets in first"
     method = words.GIVEN if given else words.ASSUMED

@@ -31,7 +31,7 @@ class Dashboard:
     def __init__(self, offered, *, evaluate=model.evaluate):
         self._evaluate = evaluate
         self.scenario = offered[0][1]
-        self.outcome = evaluate(self.scenario)
+        self.outcome = evaluate(self.scenario, bounds=False)
         self.controls = Controls(self.scenario, self._changed, self._released)
         self.label = ipywidgets.Text(self.scenario.label, description="Label", continuous_update=False)
         self.terms = ipywidgets.Checkbox(False, description="Show the terms of the energy", indent=False)
@@ -70,7 +70,7 @@ class Dashboard:
         self.status.value = reading.status(sentence, error=error)
 
     def _take(self, scenario):
-        outcome = self._evaluate(scenario)
+        outcome = self._evaluate(scenario, bounds=False)
         self.scenario, self.outcome = scenario, outcome
         self._redraw()
 
@@ -80,7 +80,8 @@ class Dashboard:
         self.headline.value = reading.headline(self.outcome)
 
     def _catch_up(self):
-        """What follows when a person pauses: exact maps, warnings and the table."""
+        """What follows when a person pauses: bounds, exact maps, warnings and the table."""
+        self.outcome = self._evaluate(self.scenario)
         self.charts.settle([self.chart(key) for key in CHARTS])
         self.warnings.value = reading.warnings(self.outcome)
         self.others.value = reading.others(self.scenario, SHOWN)

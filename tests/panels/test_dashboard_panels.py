@@ -71,10 +71,10 @@ def test_fields_that_exclude_each_other_are_refused_and_put_back(board):
 
 
 def test_a_failed_computation_leaves_everything_as_it_was():
-    def evaluate(scenario):
+    def evaluate(scenario, **options):
         if scenario.number("mass") > 1e6:
             raise ComputationError("no answer for such a star")
-        return model.evaluate(scenario)
+        return model.evaluate(scenario, **options)
 
     board = Dashboard(filing.choices([]), evaluate=evaluate)
     before = board.outcome
@@ -85,10 +85,10 @@ def test_a_failed_computation_leaves_everything_as_it_was():
 
 
 def test_an_unforeseen_error_is_shown_and_raised():
-    def evaluate(scenario):
+    def evaluate(scenario, **options):
         if scenario.number("mass") > 1e6:
             raise ZeroDivisionError("somewhere")
-        return model.evaluate(scenario)
+        return model.evaluate(scenario, **options)
 
     board = Dashboard(filing.choices([]), evaluate=evaluate)
     with pytest.raises(ZeroDivisionError):

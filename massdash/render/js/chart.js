@@ -117,7 +117,7 @@ class ChartView {
       Object.assign(canvas, { width: across, height: down });
       Object.assign(canvas.style, { width: `${width}px`, height: `${height}px` });
     }
-    const context = canvas.getContext("2d");
+    const context = canvas.getContext("2d", { alpha: false });
     context.setTransform(dense, 0, 0, dense, 0, 0);
     return context;
   }
