@@ -1,13 +1,15 @@
 """What relativistic electrons and electron-positron pairs change at the onset of collapse.
 
 They lower it by a few per cent at 1e5 Msun and by factors below 1e4. Where the onset of a star without them lies above
-5e8 K the value includes them; below, they are the bound of the value, because the margin and the charts, which must
-agree with it, know gas and radiation only. With spin or a background there is no formula yet.
+5e8 K the value includes them; below, they are the bound of the value, because the charts, which must agree with it,
+know gas and radiation only. Stars hotter than 5e8 K are computed with them, one at a time. With spin or a background
+there is no formula yet.
 """
 
 from massdash.errors import ComputationError
-from massdash.physics import eos, pair_onset
+from massdash.physics import eos, pair_onset, pair_stars
 
+_CLOSE = 0.8  # pairs lower an onset of 5e8 K by less
 BOUND = "the bound includes relativistic electrons and electron-positron pairs"
 INCLUDED = "the bound leaves electron-positron pairs out"
 NONE = "with electron-positron pairs a star so light meets no onset of collapse; the value leaves them out"
@@ -32,6 +34,17 @@ def maximum_mass(matter, ignition):
         return float(pair_onset.maximum_mass(matter.helium, matter.metals, ignition))
     except ComputationError:
         return None
+
+
+def at_temperature(matter, temperature):
+    """The Star of the scenario's mass at this central temperature [K], with pairs; ComputationError when none is."""
+    return pair_stars.at_temperature(matter.body.mass, matter.helium, matter.metals, temperature)
+
+
+def decide(body, ignition, *, onset_with_pairs):
+    """Whether the star at the ignition temperature [K] is computed with pairs: where it is hot, and where its onset is
+    and the two are so close that they must be judged alike."""
+    return not _helped(body) and bool(matter_at(ignition) or (onset_with_pairs and matter_at(ignition / _CLOSE)))
 
 
 def matter_at(temperature):

@@ -2,10 +2,11 @@
 
 from dataclasses import dataclass
 
-from massdash.constants import M_SUN, R_SUN
+from massdash.constants import K_B, M_SUN, M_U, R_SUN
 from massdash.errors import ComputationError
 from massdash.model import pairs, words
 from massdash.physics import composition, eos, relativistic
+from massdash.physics import pairs as gas_with_pairs
 from massdash.physics.family import Star
 from massdash.physics.onset import maximum_mass_leading, onset_leading
 from massdash.physics.post_newtonian import SHEDDING, Body
@@ -35,12 +36,18 @@ class Matter:
 @dataclass(frozen=True, eq=False)
 class Stability:
     """The onset, the same without pairs, and the state at the ignition temperature, None where they are not covered;
-    ``ignition`` in K."""
+    ``ignition`` in K. ``ignites_with_pairs`` says that the state at ignition was computed with pairs."""
 
     onset: Star | None
     onset_without_pairs: Star | None
     ignition: float
     igniting: Star | None
+    ignites_with_pairs: bool
+
+    @property
+    def shows_pairs(self):
+        """Whether the present state was computed with pairs."""
+        return self.ignites_with_pairs if self.settles else self.onset is not self.onset_without_pairs
 
     @property
     def settles(self):
@@ -148,7 +155,8 @@ def stability(scenario, matter, ledger, bounds):
         ledger.warn("No ignition temperature is given: 1.5e8 K is assumed until burning rates are built in.")
     found, plain = _find_onset(scenario, matter, ledger, bounds)
     _find_maximum_mass(scenario, matter, ignition, ledger, bounds)
-    result = Stability(found, plain, ignition, _igniting(matter, ignition))
+    paired = pairs.decide(matter.body, ignition, onset_with_pairs=found is not plain)
+    result = Stability(found, plain, ignition, _igniting(matter, ignition, paired), paired)
     never = "" if result.settles is not False else "never reached: collapse sets in first"
     method = words.GIVEN if given else words.ASSUMED
     for name in ("ignition_temperature", "settled_temperature"):
@@ -157,11 +165,14 @@ def stability(scenario, matter, ledger, bounds):
     return result
 
 
-def _igniting(matter, ignition):
+def _igniting(matter, ignition, paired):
     """The state at the ignition temperature; None where there is none, or its background is too dense."""
     body = matter.body
     try:
-        state = relativistic.at_temperature(body.mass, body.mu, ignition, body.rotation, body.background)
+        if paired:
+            state = pairs.at_temperature(matter, ignition)
+        else:
+            state = relativistic.at_temperature(body.mass, body.mu, ignition, body.rotation, body.background)
     except ComputationError:
         return None
     return state if matter.covers(state.density) else None
@@ -174,8 +185,13 @@ def _put_margin(scenario, stability, ledger, never):
         why = words.BEYOND_TABLE if never else words.NOT_COVERED
         ledger.leave([*margins, "pulsation_frequency_squared", "growth_time"], why)
         return
-    for name in margins:
-        ledger.put(name, state.margin, method, source, note=never)
+    if stability.ignites_with_pairs:
+        method, source = words.ONSET_WITH_PAIRS, f"{source}; {words.PAIR_SOURCE}"
+    if state.stiffness > 0:
+        for name in margins:
+            ledger.put(name, state.margin, method, source, note=never)
+    else:
+        ledger.leave(margins, words.SOFT, method, source)
     ledger.put("pulsation_frequency_squared", state.frequency_squared, method, source, note=never)
     if state.frequency_squared < 0:
         ledger.put("growth_time", (-state.frequency_squared) ** -0.5, method, source, note=never)
@@ -193,9 +209,10 @@ def present(scenario, matter, stability, ledger):
     if state is None:
         ledger.leave(_PRESENT, words.NOT_COVERED)
         return None
-    if state.temperature > eos.PAIR_TEMPERATURE:
-        ledger.warn("The centre is hotter than 5e8 K: its structure and margin leave out electron-positron pairs.")
-    _put_gas(matter, state, ledger)
+    paired = stability.shows_pairs
+    if pairs.matter_at(state.temperature) and not paired:
+        ledger.warn("The centre is hotter than 5e8 K: with spin or a background electron-positron pairs are left out.")
+    _put_gas(matter, state, ledger, gas_with_pairs if paired else eos, words.GAS_WITH_PAIRS if paired else words.GAS)
     values = {
         "central_temperature": state.temperature,
         "central_density": state.density,
@@ -204,8 +221,9 @@ def present(scenario, matter, stability, ledger):
         "binding_energy": state.energy,
         "compactness": state.compactness,
     }
+    method = words.RELATIVISTIC_WITH_PAIRS if paired else words.RELATIVISTIC
     for name, value in values.items():
-        ledger.put(name, value, words.RELATIVISTIC, words.RELATIVITY_SOURCE)
+        ledger.put(name, value, method, words.RELATIVITY_SOURCE)
     return state
 
 
@@ -223,9 +241,13 @@ _PRESENT = (
 )
 
 
-def _put_gas(matter, state, ledger):
-    entropy = eos.specific_entropy(state.density, state.temperature, matter.helium, matter.metals)
-    ledger.put("gas_pressure_fraction", state.beta, words.GAS, words.GAS_SOURCE)
-    ledger.put("adiabatic_index", eos.adiabatic_index(state.beta), words.GAS, words.GAS_SOURCE)
-    ledger.put("entropy_per_baryon", entropy, f"{words.GAS}; Sackur-Tetrode", words.GAS_SOURCE)
-    ledger.put("radiation_entropy", eos.radiation_entropy(state.beta, matter.mu), words.GAS, words.GAS_SOURCE)
+def _put_gas(matter, state, ledger, gas, method):
+    """What the gas is like at the centre; ``gas`` is the module of its equation of state."""
+    place = (state.density, state.temperature)
+    index = eos.adiabatic_index(state.beta) if gas is eos else gas.adiabatic_index(*place, matter.helium, matter.metals)
+    entropy = gas.specific_entropy(*place, matter.helium, matter.metals)
+    radiation = 4.0 * eos.radiation_pressure(state.temperature) * M_U / (state.density * K_B * state.temperature)
+    ledger.put("gas_pressure_fraction", state.beta, method, words.GAS_SOURCE)
+    ledger.put("adiabatic_index", index, method, words.GAS_SOURCE)
+    ledger.put("entropy_per_baryon", entropy, f"{method}; Sackur-Tetrode", words.GAS_SOURCE)
+    ledger.put("radiation_entropy", radiation, method, words.GAS_SOURCE)

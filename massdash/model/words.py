@@ -1,6 +1,8 @@
 """Methods and sources, worded once; the stages refer to them."""
 
 GAS = "ideal gas of nuclei and electrons plus radiation, no electron-positron pairs"
+GAS_WITH_PAIRS = "exact gas of nuclei, electrons and positrons (pairs counted as gas) plus radiation"
+RELATIVISTIC_WITH_PAIRS = "full general relativity, isentropic star of gas, radiation and electron-positron pairs"
 RELATIVISTIC = "full general relativity, isentropic star of gas and radiation"
 ONSET = "full general relativity, isentropic star of gas and radiation, zero of the lowest pulsation mode"
 ONSET_WITH_PAIRS = (
@@ -28,6 +30,7 @@ COMPTON_SOURCE = "Paczynski 1983, ApJ 267, 315"
 NO_SOURCE = ""
 BEYOND_TABLE = "never reached, and so far beyond the onset that no star was computed"
 NO_LARGEST = "none: this background keeps the onset of ever heavier stars above the ignition temperature"
+SOFT = "the average of Gamma_1 is not above 4/3: no margin is defined"
 NOT_COVERED = "not covered: the background is denser than 0.01 of the star's central density"
 
 

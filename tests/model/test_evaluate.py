@@ -204,8 +204,11 @@ def test_fields_without_effect_are_named():
 
 def test_where_methods_stop_holding():
     assert any("300 Msun" in warning for warning in evaluate(replace(LIGHT, mass=200 * u.Msun)).warnings)
-    hot = evaluate(replace(LIGHT, mass=1e4 * u.Msun, ignition_temperature=6e8 * u.K))
-    assert any("5e8 K" in warning and "centre" in warning for warning in hot.warnings)
+    hot = replace(LIGHT, mass=1e4 * u.Msun, ignition_temperature=6e8 * u.K)
+    spun = evaluate(replace(hot, spin=0.1))
+    assert any("5e8 K" in warning and "centre" in warning for warning in spun.warnings)
+    assert "pairs" in evaluate(hot).entries["central_density"].method
+    assert "pairs" not in spun.entries["central_density"].method
     assert not any("5e8 K" in warning for warning in evaluate(HEAVY).warnings)
 
 

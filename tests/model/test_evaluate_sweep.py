@@ -9,7 +9,6 @@ from random_stars import scenarios
 
 from massdash import builtin, builtin_names, evaluate
 from massdash.outcome import BIRTHS, FATES
-from massdash.physics.eos import PAIR_TEMPERATURE
 from massdash.quantities import QUANTITIES
 from massdash.report import as_json
 
@@ -34,8 +33,7 @@ def check(outcome):
 def check_consistency(outcome):
     """Numbers that must tell one story."""
     settles, margin = outcome.number("settles"), outcome.number("stability_margin")
-    hot = outcome.number("ignition_temperature") > PAIR_TEMPERATURE  # the onset knows pairs, the margin does not
-    if settles is not None and margin is not None and not hot:
+    if settles is not None and margin is not None:
         assert settles == (margin >= 0)
     if settles is not None:
         onset, ignition = outcome.number("onset_temperature"), outcome.number("ignition_temperature")
