@@ -12,12 +12,15 @@ _HOMES = {
     "MassdashError": "massdash.errors",
     "NotAvailable": "massdash.errors",
     "Outcome": "massdash.outcome",
+    "Profile": "massdash.profiles",
     "Scenario": "massdash.scenario",
     "__version__": "massdash.version",
     "builtin": "massdash.scenario",
     "builtin_names": "massdash.scenario",
     "evaluate": "massdash.model",
     "load": "massdash.scenario",
+    "profile": "massdash.profiles",
+    "read_profile": "massdash.profiles",
     "save": "massdash.scenario",
 }
 
@@ -27,12 +30,15 @@ __all__ = [
     "MassdashError",
     "NotAvailable",
     "Outcome",
+    "Profile",
     "Scenario",
     "__version__",
     "builtin",
     "builtin_names",
     "evaluate",
     "load",
+    "profile",
+    "read_profile",
     "save",
 ]
 

@@ -13,13 +13,14 @@ from massdash.errors import InputError, MassdashError, refuse
 
 FORMATS = ("text", "json", "ecsv", "latex")
 FIGURE_FORMATS = ("pdf", "svg", "png")
+STATES, SPACINGS, SYSTEMS = ("ignition", "onset"), ("uniform", "centre", "surface", "both"), ("cgs", "geometric")
+_PROFILE_WISHES = ("at", "central_density", "central_temperature", "points", "spacing", "units", "deplete")
 BUILTIN = "builtin:"
 _FILE_HELP = f"a scenario file, {BUILTIN}NAME for a built-in scenario, or - for standard input"
 _LATER = {
     "serve": "serve a read-only view of scenarios to collaborators",
     "publish": "write scenarios as a static page",
     "survey": "evaluate many scenarios at once",
-    "profile": "print the structure of a star from centre to surface",
 }
 
 
@@ -90,6 +91,29 @@ def _figures(options):
     charts = all_charts(outcome)
     _say(f"drawing {len(charts)} figures")
     for path in export_figures(charts, options.output, **wishes, provenance=provenance(outcome)):
+        print(path)
+    return 0
+
+
+def _profile(options):
+    from massdash.profiles import profile
+    from massdash.profiles.ecsv import as_text
+    from massdash.profiles.files import place
+
+    if options.output is not None:
+        place(options.output)  # a bad name is refused before anything is computed
+    wishes = {name: getattr(options, name) for name in _PROFILE_WISHES if getattr(options, name) is not None}
+    wishes |= {} if options.pairs is None else {"pairs": options.pairs == "yes"}
+    made = profile(_scenario(options.file), **wishes)
+    for sentence in made.warnings:
+        _say(f"warning: {sentence}")
+    stability, points = made.about["star"]["stability"], made.about["points"]
+    _say(f"star {made.about['state']}, {stability}: {points} points, constraint residual {made.residual:.1e}")
+    if options.output is None:
+        _reconfigure(sys.stdout, encoding="utf-8")
+        print(as_text(made.table()), end="")
+        return 0
+    for path in made.save(options.output):
         print(path)
     return 0
 
@@ -176,6 +200,7 @@ def _parser():
     _add_dashboard(commands)
     _add_evaluate(commands)
     _add_figures(commands)
+    _add_profile(commands)
     for name, what in _LATER.items():
         command = _add(commands, name, _not_built, f"{what} (not built yet)")
         command.add_argument("words", nargs="*", metavar="...", help="not read yet")
@@ -212,4 +237,22 @@ def _add_figures(commands):
     )
     command.add_argument(
         "--width", metavar="MM", default="single", help="in mm, or single or double for a journal's columns"
+    )
+
+
+def _add_profile(commands):
+    command = _add(commands, "profile", _profile, "write a star from centre to surface, ready to start its collapse")
+    command.add_argument("file", metavar="FILE", help=_FILE_HELP)
+    which = command.add_mutually_exclusive_group()
+    which.add_argument("--at", choices=STATES, help="which equilibrium of the star's rest mass; default onset")
+    which.add_argument("--central-density", metavar="X", help='the one with this rest-mass density, "0.5 g/cm3"')
+    which.add_argument("--central-temperature", metavar="X", help='the one with this temperature, "1e8 K"')
+    kinds = ".ecsv (with a second file for the equation of state), .fits or .h5"
+    command.add_argument("-o", "--output", metavar="OUT", help=f"file to write, {kinds}; default ECSV on stdout")
+    command.add_argument("--units", choices=SYSTEMS, help="cgs, or G = c = Msun = 1; default cgs")
+    command.add_argument("--points", type=int, metavar="N", help="from centre to surface, 20 to 100000; default 2000")
+    command.add_argument("--spacing", choices=SPACINGS, help="where points lie closest; default both")
+    command.add_argument("--deplete", metavar="F", help="add a column with this fraction of the pressure taken off")
+    command.add_argument(
+        "--pairs", choices=("yes", "no"), help="with electron-positron pairs or not; default above 5e8 K at the centre"
     )

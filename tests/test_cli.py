@@ -82,7 +82,7 @@ def test_version(capsys):
     assert run(capsys, "--version") == (0, f"massdash {massdash.__version__}\n", "")
 
 
-@pytest.mark.parametrize("command", ["serve", "publish", "survey", "profile"])
+@pytest.mark.parametrize("command", ["serve", "publish", "survey"])
 @pytest.mark.parametrize("rest", [[], ["a.yaml", "--locked", "-o", "x"]])
 def test_commands_of_later_exit_with_1_and_a_sentence(capsys, command, rest):
     assert run(capsys, command, *rest) == (1, "", f"massdash: the command {command} is not built yet\n")

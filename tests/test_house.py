@@ -21,7 +21,7 @@ ROOMS = (
     ("physics",),
     ("numerals", "scenario"),
     ("quantities", "outcome", "model", "provenance", "report", "latex"),
-    ("surveys",),
+    ("surveys", "profiles"),
     ("charts",),
     ("render",),
     ("panels",),
@@ -36,6 +36,7 @@ CONFINED = {
     "ipywidgets": ("panels", "door"),
     "voila": ("app", "door"),
     "yaml": ("scenario",),
+    "h5py": ("profiles",),
 }
 # A script that rebuilds tables from the physics stands below data/ and is imported by nobody.
 BUILDERS = PACKAGE / "data" / "builders"
@@ -151,7 +152,7 @@ def loaded_after(code):
 def test_the_library_loads_no_drawing_and_no_widgets(code):
     loaded = loaded_after(code)
     assert "massdash" in loaded
-    heavy = {"matplotlib", "ipywidgets", "anywidget", "IPython", "traitlets", "scipy.integrate", "astropy.cosmology"}
+    heavy = {"matplotlib", "ipywidgets", "anywidget", "IPython", "traitlets", "scipy.integrate", "astropy.cosmology", "h5py"}
     assert loaded & heavy == set()
 
 
