@@ -152,7 +152,16 @@ def loaded_after(code):
 def test_the_library_loads_no_drawing_and_no_widgets(code):
     loaded = loaded_after(code)
     assert "massdash" in loaded
-    heavy = {"matplotlib", "ipywidgets", "anywidget", "IPython", "traitlets", "scipy.integrate", "astropy.cosmology", "h5py"}
+    heavy = {
+        "matplotlib",
+        "ipywidgets",
+        "anywidget",
+        "IPython",
+        "traitlets",
+        "scipy.integrate",
+        "astropy.cosmology",
+        "h5py",
+    }
     assert loaded & heavy == set()
 
 
