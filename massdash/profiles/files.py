@@ -57,6 +57,8 @@ def _accepted(columns, matter, about, where):
     if units not in SYSTEMS:
         raise refuse("units", shown(units), f"one of {', '.join(SYSTEMS)}", where=where)
     columns = _ordered(columns, set(COLUMNS) - _OPTIONAL, where)
+    if about.get("points") != len(columns["radius"]):
+        raise refuse("points", f"{len(columns['radius'])} rows", f"{shown(about.get('points'))} rows", where=where)
     return Profile(units, columns, matter and _ordered(matter, set(MATTER), where), about)
 
 
@@ -66,9 +68,10 @@ def _ordered(columns, needed, where):
         raise refuse("columns", f"a table without {name}", ", ".join(sorted(needed)), where=where)
     for name in sorted(set(columns) - set(COLUMNS)):
         raise refuse("columns", shown(name), ", ".join(COLUMNS), where=where)
+    rows = columns["density"].shape
     for name, values in columns.items():
-        if not (values.ndim == 1 and np.all(np.isfinite(values))):
-            raise refuse(name, "a column with gaps", "finite numbers", where=where)
+        if not (len(rows) == 1 and values.shape == rows and np.all(np.isfinite(values))):
+            raise refuse(name, "a column with gaps", "a finite number in every row", where=where)
     return {name: columns[name] for name in COLUMNS if name in columns}
 
 

@@ -3,6 +3,7 @@ JSON in the one cell of the table ABOUT."""
 
 import io
 import json
+import warnings
 
 import numpy as np
 
@@ -35,9 +36,20 @@ def files(profile, path):
 
 
 def read(path):
-    """(columns, equation of state or None, header)."""
+    """(columns, equation of state or None, header); what would be read with a warning, such as a file cut short, is
+    not read."""
     from astropy.io import fits
+    from astropy.utils.exceptions import AstropyUserWarning
 
+    try:
+        with warnings.catch_warnings():
+            warnings.simplefilter("error", AstropyUserWarning)
+            return _read(fits, path)
+    except AstropyUserWarning as warning:
+        raise ValueError(str(warning)) from None
+
+
+def _read(fits, path):
     with fits.open(io.BytesIO(path.read_bytes())) as hdus:
         about = json.loads(str(hdus["ABOUT"].data["JSON"][0]))
         matter = _columns(hdus["EQUATION_OF_STATE"]) if "EQUATION_OF_STATE" in hdus else None
