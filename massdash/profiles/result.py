@@ -64,7 +64,7 @@ def _table(columns, system, about):
 
     table = QTable(meta=dict(about))
     for name, values in columns.items():
-        table[name] = np.array(values)
+        table[name] = values  # a copy
         table[name].unit = COLUMNS[name].unit_in(system) or None
         table[name].info.description = COLUMNS[name].meaning
     return table
