@@ -1,5 +1,6 @@
 """Exported files: fonts, exact size, origin inside, equal bytes, whole or not at all."""
 
+import contextlib
 import json
 import os
 import re
@@ -168,19 +169,22 @@ def test_a_file_in_place_of_the_directory_is_refused(tmp_path):
         export.export_figures((SMALL,), tmp_path / "taken", provenance=ORIGIN)
 
 
-@pytest.fixture
+@contextlib.contextmanager
 def no_room():
-    """Files end after 1000 bytes, as on a full disk."""
+    """Files end after 1000 bytes, as on a full disk; only for a moment, for the test's own log is a file too."""
     soft, hard = resource.getrlimit(resource.RLIMIT_FSIZE)
     resource.setrlimit(resource.RLIMIT_FSIZE, (1000, hard))
-    yield
-    resource.setrlimit(resource.RLIMIT_FSIZE, (soft, hard))
+    try:
+        yield
+    finally:
+        resource.setrlimit(resource.RLIMIT_FSIZE, (soft, hard))
 
 
-def test_without_room_the_old_file_stays_whole(tmp_path, no_room):
+def test_without_room_the_old_file_stays_whole(tmp_path):
     path = tmp_path / "map.pdf"
     path.write_bytes(b"old")
-    with pytest.raises(InputError, match=r"map\.pdf: cannot be written \(File too large\); give a place .* 5000 bytes"):
+    sentence = r"map\.pdf: cannot be written \(File too large\); give a place .* 5000 bytes"
+    with no_room(), pytest.raises(InputError, match=sentence):
         export.write_file(path, b"x" * 5000)
     assert path.read_bytes() == b"old"
     assert list(tmp_path.iterdir()) == [path]
