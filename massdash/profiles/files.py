@@ -1,7 +1,6 @@
 """Profiles to files and back; the format is that of the file's name."""
 
 import os
-import secrets
 from pathlib import Path
 
 import numpy as np
@@ -12,6 +11,7 @@ from massdash.profiles.about import SCHEMA
 from massdash.profiles.columns import COLUMNS, MATTER, SYSTEMS
 from massdash.profiles.result import Profile
 from massdash.scenario.values import one_line, shown
+from massdash.whole import write_whole
 
 FORMATS = {".ecsv": ecsv, ".fits": fits, ".h5": hdf5, ".hdf5": hdf5}
 _OPTIONAL = {"depleted_pressure"}
@@ -23,7 +23,7 @@ def save(profile, path):
     path, module = place(path)
     files = module.files(profile, path)
     try:
-        _put(files)
+        write_whole(files)
     except (OSError, ValueError) as error:
         raise _failed(path, "cannot be written", error) from None
     return list(files)[::-1]
@@ -73,26 +73,6 @@ def _ordered(columns, needed, where):
         if not (len(rows) == 1 and values.shape == rows and np.all(np.isfinite(values))):
             raise refuse(name, "a column with gaps", "a finite number in every row", where=where)
     return {name: columns[name] for name in COLUMNS if name in columns}
-
-
-def _put(files):
-    """Write temporary neighbours, then move all into place, so that readers see old files or new ones."""
-    drafts = {}
-    try:
-        for path, content in files.items():
-            target = Path(os.path.realpath(path))
-            if target.exists() and not target.is_file():
-                raise ValueError("not an ordinary file")
-            draft = target.with_name(f".{target.name[:40]}-{secrets.token_hex(4)}")
-            drafts[draft] = target
-            draft.write_bytes(content)
-            if target.exists():
-                draft.chmod(target.stat().st_mode & 0o777)
-        for draft, target in drafts.items():
-            draft.replace(target)
-    finally:
-        for draft in drafts:
-            draft.unlink(missing_ok=True)
 
 
 def _name(path):

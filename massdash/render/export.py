@@ -15,6 +15,7 @@ from xml.sax.saxutils import escape
 from massdash import provenance as origin
 from massdash.errors import InputError, refuse
 from massdash.render.paper_check import WIDTHS, check_chart, check_sizes
+from massdash.whole import write_whole
 
 FORMATS = ("pdf", "svg", "png")
 PNG_DPI = 600  # line art in print
@@ -80,17 +81,13 @@ def export_figures(charts, directory, *, formats=("pdf",), width_mm=88, font_siz
 
 def write_file(path, content):
     """Put bytes at a path at once: a reader sees the old file or the whole new one. InputError when that fails."""
-    draft = path.with_name(f".{path.name}.{os.getpid()}.part")
     try:
-        try:
-            draft.write_bytes(content)
-            draft.replace(path)
-        finally:
-            draft.unlink(missing_ok=True)
-    except OSError as error:
+        write_whole({path: content})
+    except (OSError, ValueError) as error:
         allowed = f"a place that can be written and has {len(content)} bytes free"
+        reason = getattr(error, "strerror", None) or error
         raise InputError(
-            f"{path}: cannot be written ({error.strerror}); give {allowed}", name="file", got=str(path), allowed=allowed
+            f"{path}: cannot be written ({reason}); give {allowed}", name="file", got=str(path), allowed=allowed
         ) from error
     return path
 

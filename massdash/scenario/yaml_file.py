@@ -5,7 +5,6 @@ refused as soon as they are seen, so that nothing in a file runs code or grows b
 """
 
 import os
-import secrets
 from pathlib import Path
 
 import yaml
@@ -14,6 +13,7 @@ from massdash.errors import InputError, refuse
 from massdash.scenario.fields import FIELDS
 from massdash.scenario.scenario import Scenario
 from massdash.scenario.values import one_line, shown
+from massdash.whole import write_whole
 
 SCHEMA = 1
 LARGEST = 2**20  # bytes
@@ -42,7 +42,7 @@ def save(scenario, path):
         raise refuse("scenario", shown(scenario), "a Scenario")
     path = _path(path)
     try:
-        _replace(Path(os.path.realpath(path)), to_text(scenario).encode())
+        write_whole({path: to_text(scenario).encode()})
     except (OSError, ValueError) as error:
         raise _file_error(path, "cannot be written", error) from None
 
@@ -156,21 +156,3 @@ def _file_error(path, what, error):
     reason = getattr(error, "strerror", None) or str(error)
     where = _name(path)
     return InputError(f"{where}: the file {what} ({one_line(reason)})", name="file", got=reason, where=where)
-
-
-def _replace(target, data):
-    """Write to a temporary neighbour and move it into place, so that readers see the old file or the new one."""
-    if target.exists() and not target.is_file():
-        raise ValueError("not an ordinary file")
-    part = target.with_name(f".{target.name[:40]}-{secrets.token_hex(4)}")
-    with part.open("xb") as file:
-        try:
-            file.write(data)
-            file.flush()
-            os.fsync(file.fileno())
-            if target.exists():
-                part.chmod(target.stat().st_mode & 0o777)
-            part.replace(target)
-        except BaseException:
-            part.unlink()
-            raise
