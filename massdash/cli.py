@@ -86,6 +86,7 @@ def _figures(options):
     from massdash.render.export import WIDTHS, export_figures, provenance
 
     wishes = {"formats": tuple(dict.fromkeys(options.format or ["pdf"])), "width_mm": _width(options.width, WIDTHS)}
+    _make_directory(options.output)
     export_figures((), options.output, **wishes, provenance={})  # bad wishes are refused before anything is computed
     outcome = _outcome(options.file)
     charts = all_charts(outcome)
@@ -93,6 +94,16 @@ def _figures(options):
     for path in export_figures(charts, options.output, **wishes, provenance=provenance(outcome)):
         print(path)
     return 0
+
+
+def _make_directory(name):
+    from massdash.errors import refuse
+
+    try:
+        os.makedirs(name, exist_ok=True)
+    except OSError as error:
+        allowed = "a directory that exists or can be made"
+        raise refuse("directory", f"'{name}' ({error.strerror})", allowed) from error
 
 
 def _profile(options):

@@ -43,7 +43,7 @@ class Entry:
     high: float | None = None
 
 
-@dataclass(frozen=True, eq=False)
+@dataclass(frozen=True, eq=False, repr=False)
 class Outcome:
     """The answer for one scenario. ``outcome[name]`` is an astropy Quantity; ``entries`` holds all that is known.
 
@@ -71,6 +71,23 @@ class Outcome:
             raise NotAvailable(f"{name} has no value here: {entry.note}")
         return u.Quantity(entry.value, u.Unit(entry.unit))
 
+    def __contains__(self, name):
+        return name in self.entries
+
+    def __iter__(self):
+        return iter(self.entries)
+
+    def keys(self):
+        """Names of all quantities, in order along the chain."""
+        return self.entries.keys()
+
+    def __repr__(self):
+        return f"<Outcome: {self.headline}>"
+
+    def __reduce__(self):
+        parts = (self.birth, self.fate, self.headline, self.warnings, self.workings)
+        return Outcome, (self.scenario, dict(self.entries), *parts)
+
     def number(self, name):
         """The value in the quantity's own unit, or None."""
         return self.entries[name].value
@@ -89,5 +106,8 @@ class Outcome:
             table[name] = MaskedColumn(filled, mask=missing)
         for name in ("unit", "method", "source", "note"):
             table[name] = [getattr(entry, name) for entry in entries]
-        table.meta.update(scenario=self.scenario.label, birth=self.birth, fate=self.fate, warnings=list(self.warnings))
+        from massdash.provenance import provenance
+
+        verdict = {"birth": self.birth, "fate": self.fate, "warnings": list(self.warnings)}
+        table.meta.update(provenance(self), **verdict)
         return table

@@ -45,7 +45,7 @@ def energy_chart(outcome, *, terms=False, post_newtonian=False):
         Line("locus", "equilibria", rho, _locus(body, rho), 0),
         Line("own", "at its entropy (post-Newtonian)", rho, parts["total"], 1),
         Rule("zero", "", "y", 0.0),
-        Point("onset", "onset of collapse", float(onset.density), float(onset.energy), "onset"),
+        Point("onset", _onset_label(outcome), float(onset.density), float(onset.energy), "onset"),
     ]
     if post_newtonian:
         approximate = equilibrium_at_density(body, rho).energy
@@ -59,10 +59,16 @@ def energy_chart(outcome, *, terms=False, post_newtonian=False):
         marks.append(Point("barrier", "barrier", *barrier, "unstable"))
     marks.append(Point("star", outcome.scenario.label, float(star.density), float(star.energy), "present"))
     energy = Axis("Energy", "erg", "symlog", (bottom, top), linear_width=depth)
-    notes = ("Locus and points in full relativity, the curve at fixed entropy post-Newtonian; fixed rest mass.",)
+    notes = ("Locus and points in full relativity, the curve at fixed entropy post-Newtonian; no pairs.",)
     sources = (words.RELATIVITY_SOURCE, *words.energy_source(outcome.scenario).split("; "))
     alt = _alt(outcome, star, onset)
     return Chart("energy", "Binding energy", density, energy, tuple(marks), alt, notes, sources)
+
+
+def _onset_label(outcome):
+    stability = outcome.workings.stability
+    paired = stability.onset is not stability.onset_without_pairs or outcome.number("onset_temperature") is None
+    return "onset without pairs" if paired else "onset of collapse"
 
 
 def _highest(onset, barrier):
@@ -104,9 +110,10 @@ def _alt(outcome, star, onset):
     scenario = outcome.scenario
     settled = outcome.workings.stability.settles
     where = "in the minimum of its own curve" if settled else "at the onset of collapse, where no barrier is left"
+    sets_in = "would set in without electron-positron pairs" if "without" in _onset_label(outcome) else "sets in"
     return (
         f"Energy against central density for {numeral(scenario.number('mass'))} Msun: {scenario.label} lies {where}, "
         f"at {numeral(float(star.density))} g/cm3 and {numeral(float(star.energy))} erg; the equilibria have their "
         f"lowest energy, {numeral(float(onset.energy))} erg, at {numeral(float(onset.density))} g/cm3, where collapse "
-        "sets in."
+        f"{sets_in}."
     )

@@ -2,9 +2,12 @@
 
 from dataclasses import dataclass
 
+from massdash.errors import refuse
 from massdash.model import life, pending, structure, verdict
 from massdash.model.ledger import Ledger
 from massdash.outcome import Outcome
+from massdash.scenario import Scenario
+from massdash.scenario.values import shown
 
 __all__ = ["Workings", "evaluate"]
 
@@ -25,6 +28,8 @@ def evaluate(scenario, *, bounds=True):
     Without ``bounds`` the spread that takes time of its own is left out, which the live dashboard does while a slider
     moves; all values are the same. Raises ComputationError when no answer is found for an acceptable scenario.
     """
+    if not isinstance(scenario, Scenario):
+        raise refuse("scenario", shown(scenario), "a Scenario (md.load reads one from a file)")
     ledger = Ledger()
     matter = structure.matter(scenario, ledger)
     stability = structure.stability(scenario, matter, ledger, bounds)

@@ -6,7 +6,7 @@ import numpy as np
 
 from massdash.constants import L_SUN, M_SUN, YEAR
 from massdash.errors import ComputationError
-from massdash.model import words
+from massdash.model import pairs, words
 from massdash.physics import opacity
 from massdash.physics.composition import hydrogen_of_weight
 from massdash.physics.evolution import EXHAUSTED, contraction_time, mixed_burning_time, nuclear_timescale
@@ -47,7 +47,7 @@ def life(scenario, matter, stability, state, ledger):
         return None
     central = opacity.central_opacity(state.density, state.temperature, matter.hydrogen)
     luminosity = float(eddington * (1.0 - state.beta))
-    ledger.put("central_opacity", central, "fit to Compton scattering, coefficients from memory", words.COMPTON_SOURCE)
+    ledger.put("central_opacity", central, "fit to Compton scattering", words.COMPTON_SOURCE)
     ledger.put("luminosity", luminosity / L_SUN, "L_Edd (1 - beta)", words.LIFE_SOURCE)
     times = _times(matter, stability, state, luminosity)
     _put_times(matter, stability, times, luminosity, ledger)
@@ -59,7 +59,10 @@ def _times(matter, stability, state, luminosity):
     contraction = float(contraction_time(state.energy, luminosity)) if state.energy < 0 else None
     if not stability.settles or matter.hydrogen <= EXHAUSTED:
         return Life(contraction, None, None, not stability.settles)
-    turn = float(hydrogen_at_onset(body, stability.ignition, matter.metals))
+    if stability.ignites_with_pairs:
+        turn = pairs.hydrogen_at_onset(matter, stability.ignition)
+    else:
+        turn = float(hydrogen_at_onset(body, stability.ignition, matter.metals))
     end = min(max(turn, EXHAUSTED), matter.hydrogen)
     burning = float(mixed_burning_time(matter.hydrogen, end, state.beta))
     return Life(contraction, burning, end, turn > EXHAUSTED)

@@ -63,7 +63,7 @@ def matter(scenario, ledger):
     body = Body(mass, mu, scenario.spin**2 * SHEDDING, background)
     ledger.put("mean_molecular_weight", mu, "full ionisation, mass numbers", words.COMPOSITION_SOURCE)
     if scenario.number("mass") < 300:
-        ledger.warn("Below about 300 Msun gas pressure is so strong that the n = 3 shape is no longer good.")
+        ledger.warn("Below about 300 Msun gas pressure is so strong that the closed forms (n = 3) are no longer good.")
     return Matter(scenario.hydrogen, helium, metals, mu, body)
 
 
@@ -98,8 +98,11 @@ def _put_onset(scenario, matter, plain, paired, ledger):
     hot = pairs.matter_at(plain.temperature)
     value, other, note = plain, paired, pairs.BOUND
     method, source = words.onset_method(scenario), words.stability_source(scenario)
+    if hot and paired is None and not pairs.left_out(matter.body):
+        ledger.leave([f"onset_{what}" for what in _ONSET], pairs.NONE, words.ONSET_WITH_PAIRS, source)
+        return plain
     if paired is None:
-        note = pairs.why_none(matter.body) if hot else ""
+        note = pairs.LEFT_OUT if hot else ""
         if hot:
             ledger.warn(f"The onset lies above 5e8 K: {note}.")
     elif hot:
@@ -110,7 +113,7 @@ def _put_onset(scenario, matter, plain, paired, ledger):
     return value
 
 
-def _find_maximum_mass(scenario, matter, ignition, ledger, bounds):
+def _find_maximum_mass(scenario, matter, ignition, ledger, bounds, paired):
     body = matter.body
     source = words.energy_source(scenario)
     arguments = (body.mu, ignition, body.rotation, body.background)
@@ -125,20 +128,24 @@ def _find_maximum_mass(scenario, matter, ignition, ledger, bounds):
     if not matter.covers(onset_leading(Body(leading, *arguments[::2], body.background)).density):
         ledger.leave(["maximum_mass", "maximum_mass_pn"], words.NOT_COVERED)
         return
-    paired = pairs.maximum_mass(matter, ignition) if bounds or pairs.matter_at(ignition) else None
-    _put_maximum_mass(scenario, exact / M_SUN, paired, ignition, ledger)
+    with_pairs = pairs.maximum_mass(matter, ignition) if bounds or paired else None
+    _put_maximum_mass(scenario, exact / M_SUN, with_pairs, paired, ledger)
     ledger.put("maximum_mass_pn", leading / M_SUN, words.LEADING, source, other=second / M_SUN)
 
 
-def _put_maximum_mass(scenario, plain, paired, ignition, ledger):
+def _put_maximum_mass(scenario, plain, with_pairs, paired, ledger):
+    """Write the maximum mass [Msun] with its bound; ``paired`` says that pairs decide, as for the margin."""
     method, source = words.onset_method(scenario), words.stability_source(scenario)
-    if paired is None:
-        ledger.put("maximum_mass", plain, method, source)
-    elif pairs.matter_at(ignition):
+    if paired and with_pairs is None:
+        ledger.leave("maximum_mass", pairs.NO_LARGEST, words.ONSET_WITH_PAIRS, source)
+    elif paired:
         source = f"{source}; {words.PAIR_SOURCE}"
-        ledger.put("maximum_mass", paired / M_SUN, words.ONSET_WITH_PAIRS, source, note=pairs.INCLUDED, other=plain)
+        value, note = with_pairs / M_SUN, pairs.INCLUDED
+        ledger.put("maximum_mass", value, words.ONSET_WITH_PAIRS, source, note=note, other=plain)
+    elif with_pairs is None:
+        ledger.put("maximum_mass", plain, method, source)
     else:
-        ledger.put("maximum_mass", plain, method, source, note=pairs.BOUND, other=paired / M_SUN)
+        ledger.put("maximum_mass", plain, method, source, note=pairs.BOUND, other=with_pairs / M_SUN)
 
 
 def ignition_of(scenario):
@@ -154,14 +161,15 @@ def stability(scenario, matter, ledger, bounds):
     if not given:
         ledger.warn("No ignition temperature is given: 1.5e8 K is assumed until burning rates are built in.")
     found, plain = _find_onset(scenario, matter, ledger, bounds)
-    _find_maximum_mass(scenario, matter, ignition, ledger, bounds)
     paired = pairs.decide(matter.body, ignition, onset_with_pairs=found is not plain)
+    _find_maximum_mass(scenario, matter, ignition, ledger, bounds, paired)
     result = Stability(found, plain, ignition, _igniting(matter, ignition, paired), paired)
     never = "" if result.settles is not False else "never reached: collapse sets in first"
     method = words.GIVEN if given else words.ASSUMED
     for name in ("ignition_temperature", "settled_temperature"):
         ledger.put(name, ignition, method, words.NO_SOURCE, note=never)
     _put_margin(scenario, result, ledger, never)
+    _warn_between(ledger, result)
     return result
 
 
@@ -176,6 +184,13 @@ def _igniting(matter, ignition, paired):
     except ComputationError:
         return None
     return state if matter.covers(state.density) else None
+
+
+def _warn_between(ledger, stability):
+    """Say so when the verdict would be another at the bound of the onset."""
+    bound = ledger.entries["onset_temperature"].low
+    if stability.settles and bound is not None and bound < stability.ignition:
+        ledger.warn("With relativistic electrons and pairs collapse would set in before ignition: see the bounds.")
 
 
 def _put_margin(scenario, stability, ledger, never):
@@ -212,7 +227,9 @@ def present(scenario, matter, stability, ledger):
     paired = stability.shows_pairs
     if pairs.matter_at(state.temperature) and not paired:
         ledger.warn("The centre is hotter than 5e8 K: with spin or a background electron-positron pairs are left out.")
-    _put_gas(matter, state, ledger, gas_with_pairs if paired else eos, words.GAS_WITH_PAIRS if paired else words.GAS)
+    if paired or stability.onset is not stability.onset_without_pairs:
+        ledger.warn("Electron-positron pairs are in the values of this star, but the charts leave them out.")
+    _put_gas(matter, state, ledger, paired)
     values = {
         "central_temperature": state.temperature,
         "central_density": state.density,
@@ -221,9 +238,11 @@ def present(scenario, matter, stability, ledger):
         "binding_energy": state.energy,
         "compactness": state.compactness,
     }
-    method = words.RELATIVISTIC_WITH_PAIRS if paired else words.RELATIVISTIC
+    method, source = words.RELATIVISTIC, words.RELATIVITY_SOURCE
+    if paired:
+        method, source = words.RELATIVISTIC_WITH_PAIRS, f"{source}; {words.PAIR_SOURCE}"
     for name, value in values.items():
-        ledger.put(name, value, method, words.RELATIVITY_SOURCE)
+        ledger.put(name, value, method, source)
     return state
 
 
@@ -241,13 +260,18 @@ _PRESENT = (
 )
 
 
-def _put_gas(matter, state, ledger, gas, method):
-    """What the gas is like at the centre; ``gas`` is the module of its equation of state."""
-    place = (state.density, state.temperature)
-    index = eos.adiabatic_index(state.beta) if gas is eos else gas.adiabatic_index(*place, matter.helium, matter.metals)
-    entropy = gas.specific_entropy(*place, matter.helium, matter.metals)
+def _put_gas(matter, state, ledger, paired):
+    """What the gas is like at the centre, with pairs or without."""
+    place, mixture = (state.density, state.temperature), (matter.helium, matter.metals)
+    if paired:
+        method, source, how = words.GAS_WITH_PAIRS, words.PAIR_SOURCE, ""
+        index = gas_with_pairs.adiabatic_index(*place, *mixture)
+        entropy = gas_with_pairs.specific_entropy(*place, *mixture)
+    else:
+        method, source, how = words.GAS, words.GAS_SOURCE, "; Sackur-Tetrode"
+        index, entropy = eos.adiabatic_index(state.beta), eos.specific_entropy(*place, *mixture)
     radiation = 4.0 * eos.radiation_pressure(state.temperature) * M_U / (state.density * K_B * state.temperature)
-    ledger.put("gas_pressure_fraction", state.beta, method, words.GAS_SOURCE)
-    ledger.put("adiabatic_index", index, method, words.GAS_SOURCE)
-    ledger.put("entropy_per_baryon", entropy, f"{method}; Sackur-Tetrode", words.GAS_SOURCE)
-    ledger.put("radiation_entropy", radiation, method, words.GAS_SOURCE)
+    ledger.put("gas_pressure_fraction", state.beta, method, source)
+    ledger.put("adiabatic_index", index, method, source)
+    ledger.put("entropy_per_baryon", entropy, method + how, source)
+    ledger.put("radiation_entropy", radiation, method, source)

@@ -22,13 +22,27 @@ def headline(scenario, ledger, stability, times):
 
 
 def _first(name, ledger, stability):
-    onset = numeral(stability.onset.temperature)
-    ignition = numeral(stability.ignition)
+    onset, ignition = _apart(stability.onset.temperature, stability.ignition)
+    if ledger.entries["onset_temperature"].value is None:
+        return f"{name} settles: hydrogen ignites at {ignition} K, and so light a star meets no onset of collapse."
     if not stability.settles:
         return f"{name} never ignites: collapse sets in at {onset} K, before the {ignition} K that burning needs."
+    if stability.igniting is None:
+        return f"{name} would settle at {ignition} K, but its background is too dense there for the methods at hand."
+    if ledger.entries["hydrogen_lifetime"].value is None:
+        return f"{name} could settle at {ignition} K, below the onset of collapse at {onset} K, but has no hydrogen."
     margin = ledger.entries["stability_margin"].value
     where = f", with a stability margin of {numeral(margin, 2)}" if margin is not None else ""
     return f"{name} settles: hydrogen ignites at {ignition} K, below the onset of collapse at {onset} K{where}."
+
+
+def _apart(one, other):
+    """Both numbers with as many digits, three or more, as it takes to tell them apart."""
+    for digits in range(3, 9):
+        texts = numeral(one, digits), numeral(other, digits)
+        if texts[0] != texts[1]:
+            break
+    return texts
 
 
 def _limit(ledger):
@@ -44,7 +58,7 @@ def _shining(ledger, stability, times):
     if stability.settles:
         burning = ledger.entries["hydrogen_lifetime"].value
         if burning is None:
-            return f"{shines}; it has no hydrogen to burn."
+            return f"{shines}."
         end = "until rising mean weight makes it unstable" if times.onset_reached else "until its hydrogen is used up"
         return f"{shines} for {duration(burning, 2)}, {end}."
     rate = ledger.entries["assembly_rate"].value

@@ -54,6 +54,7 @@ class Dashboard:
     def show(self, scenario):
         """Show another scenario. Raises MassdashError, and changes nothing, when it cannot be evaluated."""
         self._take(scenario)
+        self.status.value = ""
         self.controls.show(self.scenario)
         self._show_label()
         self._later.soon()
@@ -135,7 +136,7 @@ class Dashboard:
 
     def _pointed(self, kind, chart, handle, x, y):
         """A drag of the star on the map, or a click there, moves it; positions outside the allowed ranges do not."""
-        place = dict(zip(_MAP_FIELDS, (x, y), strict=True))
+        place = {name: float(f"{value:.4g}") for name, value in zip(_MAP_FIELDS, (x, y), strict=True)}
         if chart != "map" or not all(FIELDS[name].low <= value <= FIELDS[name].high for name, value in place.items()):
             return
         if self._attempt({name: FIELDS[name].with_unit(value) for name, value in place.items()}, self._refuse):

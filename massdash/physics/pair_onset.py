@@ -146,7 +146,7 @@ class _Curves:
         """ln t^(1/2) of the onset of stars of given ln(M0/M_sun), by Newton's method from the colder side."""
         if not np.all(log_mass >= self.log_mass(self.turn())[0]):
             raise ComputationError(
-                "no onset of collapse: pairs soften only heavier stars enough (least_mass says from which mass on)"
+                "no onset of collapse: with electron-positron pairs so light a star never becomes soft enough"
             )
         heavier = self.on_grid >= log_mass
         log_root = _GRID[np.maximum(np.argmin(heavier, axis=0) - 1, 0)]

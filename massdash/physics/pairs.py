@@ -17,6 +17,7 @@ Functions take and return arrays in cgs; ``Fluid`` holds the units of the electr
 from dataclasses import dataclass, fields
 
 import numpy as np
+from scipy.special import xlogy
 
 from massdash.constants import HBAR, K_B, M_E, M_U, C
 from massdash.errors import ComputationError, refuse
@@ -58,9 +59,8 @@ def composition(helium, metals):
     electrons = electrons_per_baryon(helium, metals)
     ions, constant = 0.0, 0.0
     for abundance, weight, mass in ((hydrogen(helium, metals), 2.0, M_U), (helium / 4.0, 1.0, 4.0 * M_U)):
-        share = abundance / electrons
-        present = np.where(share > 0, share, 1.0)
-        constant = constant + share * np.log(weight * (mass / (2.0 * np.pi * M_E)) ** 1.5 / present)
+        share = np.maximum(abundance, 0.0) / electrons  # what helium and metals leave may miss 0 by a bit
+        constant = constant + share * np.log(weight * (mass / (2.0 * np.pi * M_E)) ** 1.5) - xlogy(share, share)
         ions = ions + share
     return Composition(electrons, ions, constant)
 

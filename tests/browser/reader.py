@@ -29,7 +29,7 @@ class Reader:
         for name in ("Ember", "Lantern"):
             self.page.get_by_label("Scenario").select_option(f"{name} (built in)")
             expect(self.headline).to_contain_text(name)
-        self.shows("radius", float(evaluate(builtin("lantern"))["radius"].value))  # the table follows a little later
+        self.shows("radius", float(evaluate(builtin("lantern"))["radius"].value))
 
     def type(self, label, text):
         entry = self.field(label).get_by_role("textbox")
@@ -45,7 +45,8 @@ class Reader:
 
     def shows(self, name, expected):
         """Waits until the table gives exactly this value for a quantity."""
-        expect(self.quantity(name)).to_have_attribute("data-value", re.compile(rf"^{re.escape(repr(expected))}$"))
+        value = re.compile(rf"^{re.escape(repr(expected))}$")
+        expect(self.quantity(name)).to_have_attribute("data-value", value, timeout=SLOW)  # the table follows later
 
     def changes(self, name, act):
         """The value of a quantity before and after ``act()``, which must change it."""

@@ -35,14 +35,17 @@ def check_consistency(outcome):
     settles, margin = outcome.number("settles"), outcome.number("stability_margin")
     if settles is not None and margin is not None:
         assert settles == (margin >= 0)
+    if settles is not None and (largest := outcome.number("maximum_mass")) is not None:
+        mass = outcome.scenario.number("mass")
+        assert settles == (mass <= largest) or mass == pytest.approx(largest, rel=1e-6)
     if settles is not None:
         onset, ignition = outcome.number("onset_temperature"), outcome.number("ignition_temperature")
-        assert settles == (ignition <= onset)
+        assert settles == (onset is None or ignition <= onset)  # None: so light a star meets no onset
         if (now := outcome.number("central_temperature")) is not None:
-            assert now == pytest.approx(min(onset, ignition), rel=1e-6)
+            assert now == pytest.approx(ignition if onset is None else min(onset, ignition), rel=1e-6)
         assert (outcome.fate == "collapse_before_ignition") == (settles == 0)
     squared = outcome.number("pulsation_frequency_squared")
-    if squared is not None and abs(margin) > 1e-9:
+    if squared is not None and margin is not None and abs(margin) > 1e-9:
         assert (squared > 0) == (margin > 0)
         assert (outcome.number("growth_time") is None) == (squared > 0)
 

@@ -1,6 +1,7 @@
 """The outcome as an object: frozen, with units, a table with gaps, and a reason where there is no value."""
 
 import dataclasses
+import pickle
 
 import numpy as np
 import pytest
@@ -8,7 +9,7 @@ from astropy import units as u
 from astropy.table import QTable
 
 from massdash import NotAvailable, Scenario, evaluate
-from massdash.errors import ComputationError
+from massdash.errors import ComputationError, InputError
 from massdash.model.ledger import Ledger
 from massdash.quantities import QUANTITIES
 
@@ -55,8 +56,26 @@ def test_table():
         assert entry.value is None or row["value"] == entry.value
         assert np.ma.is_masked(row["low"]) == (entry.low is None)
         assert row["unit"] == entry.unit
-    assert table.meta["scenario"] == "Buoy"
+    assert table.meta["scenario"]["label"] == "Buoy"
+    assert table.meta["program"].startswith("massdash ")
+    assert table.meta["sources"]
     assert table.meta["fate"] == OUTCOME.fate
+
+
+def test_an_outcome_is_a_mapping_of_names_that_travels_between_processes():
+    back = pickle.loads(pickle.dumps(OUTCOME))
+    assert dict(back.entries) == dict(OUTCOME.entries)
+    assert back.headline == OUTCOME.headline
+    assert list(OUTCOME) == list(OUTCOME.keys()) == list(QUANTITIES)
+    assert "radius" in OUTCOME
+    assert "girth" not in OUTCOME
+    assert len(repr(OUTCOME)) < 1000
+
+
+@pytest.mark.parametrize("wrong", ["lantern.yaml", None, 3])
+def test_only_scenarios_are_evaluated(wrong):
+    with pytest.raises(InputError, match="a Scenario"):
+        evaluate(wrong)
 
 
 def test_no_stage_can_write_what_is_not_finite():

@@ -113,6 +113,13 @@ def test_texts_and_lines_stand_out_from_the_page(page, dark):
         assert contrast(colour(style["line"]), paper) >= 3
 
 
+@pytest.mark.parametrize("dark", [False, True])
+def test_charts_stand_on_the_page_s_own_paper(page, dark):
+    open_charts(page, [curves()], dark=dark)
+    corner = "Array.from(document.querySelector('canvas').getContext('2d').getImageData(2, 2, 1, 1).data)"
+    assert page.evaluate(corner)[:3] == colour(page.evaluate("views[0].theme.paper"))[:3]
+
+
 def test_the_theme_is_followed_when_the_page_changes_it(page):
     open_charts(page, [curves()])
     page.evaluate("document.body.style.background = '#111'; undefined")

@@ -87,6 +87,7 @@ class ChartInput {
     if (!pressed) return this.hover(place);
     pressed.moving ||= Math.hypot(place.px - pressed.px, place.py - pressed.py) > CLICK_SLACK;
     if (!pressed.moving) return;
+    if (this.cursor) this.leave(); // a read-out that stays behind would cover what is dragged
     if (pressed.mark) this.drag(pressed.mark, place, "drag");
     else this.showZoomBox(pressed, place);
   }

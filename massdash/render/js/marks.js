@@ -314,7 +314,8 @@ const DRAW = { line: drawLine, band: drawBand, span: drawSpan, rule: drawRule, p
 
 /** Paints a chart from the bottom up: colours, areas, grid, lines, points, and texts over everything. */
 function paintChart(view, context, width, height) {
-  context.clearRect(0, 0, width, height);
+  context.fillStyle = view.theme.paper; // the canvas is opaque, which browsers put together faster
+  context.fillRect(0, 0, width, height);
   const picture = new Picture(view, context, width, height);
   const draw = (...kinds) =>
     view.marks.filter((mark) => kinds.includes(mark.kind)).forEach((m) => DRAW[m.kind](picture, m));
