@@ -8,7 +8,8 @@ from massdash.numerals import numeral
 from massdash.physics import relativistic
 from massdash.physics.post_newtonian import energy_terms, equilibrium_at_density
 
-POINTS = 240
+POINTS = 160
+_SEARCHED = 240  # densities at which the barrier is looked for
 # The density axis reaches from _BELOW times the star's to _ABOVE times the onset's or _BEYOND times the barrier's.
 _BELOW, _ABOVE, _BEYOND = 1e-2, 12.0, 3.0
 _LARGEST_Y = 0.3  # post-Newtonian terms mean nothing beyond
@@ -77,7 +78,8 @@ def _highest(onset, barrier):
 
 def _locus(body, rho):
     """Energy of the equilibria in full relativity; NaN beyond the table."""
-    known = relativistic.covers_density(body.mass, body.mu, rho)
+    # twice the density, so that no star at the table's edge has to be integrated while a slider moves
+    known = relativistic.covers_density(body.mass, body.mu, 2.0 * rho)
     energy = np.full_like(rho, np.nan)
     energy[known] = relativistic.at_density(body.mass, body.mu, rho[known]).energy
     return energy
@@ -88,7 +90,7 @@ def _barrier(body, star):
     highest = body.density(_LARGEST_Y)
     if not star.density < highest:
         return None
-    rho = np.geomspace(star.density, highest, POINTS)
+    rho = np.geomspace(star.density, highest, _SEARCHED)
     own = energy_terms(body, star, rho)["total"]
     inner = np.flatnonzero((own[1:-1] > own[:-2]) & (own[1:-1] >= own[2:])) + 1
     if not inner.size:

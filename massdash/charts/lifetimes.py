@@ -13,7 +13,7 @@ from massdash.numerals import duration, numeral
 from massdash.physics import opacity, relativistic
 from massdash.physics.evolution import EXHAUSTED, contraction_time, mixed_burning_time, nuclear_timescale
 
-POINTS = 101
+POINTS = 81
 _CLOSE, _NEAREST = 14, 1e-3  # points of the burning line next to the largest mass, the nearest this part below it
 
 

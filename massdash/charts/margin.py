@@ -10,7 +10,7 @@ from massdash.model import words
 from massdash.numerals import numeral
 from massdash.physics.post_newtonian import equilibrium_at_temperature
 
-POINTS = 161
+POINTS = 121
 LOWEST = -1.0  # the axis ends here; a star below it is drawn on the edge with its value beside it
 _STEP = 0.1  # the axis' upper end is a multiple of it: 1, or more where rotation, background or a light star ask for it
 

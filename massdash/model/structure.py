@@ -1,6 +1,7 @@
 """Matter, onset of collapse, ignition and the present state: the first stages of ``evaluate``."""
 
 from dataclasses import dataclass
+from functools import lru_cache
 
 from massdash.constants import K_B, M_SUN, M_U, R_SUN
 from massdash.errors import ComputationError
@@ -118,8 +119,7 @@ def _find_maximum_mass(scenario, matter, ignition, ledger, bounds, paired):
     source = words.energy_source(scenario)
     arguments = (body.mu, ignition, body.rotation, body.background)
     try:
-        leading, exact = maximum_mass_leading(*arguments), relativistic.maximum_mass(*arguments)
-        second = maximum_mass_leading(*arguments, second_order=True)
+        leading, second, exact = _largest(*arguments)
     except ComputationError:
         if not body.background > 0:
             raise
@@ -131,6 +131,14 @@ def _find_maximum_mass(scenario, matter, ignition, ledger, bounds, paired):
     with_pairs = pairs.maximum_mass(matter, ignition) if bounds or paired else None
     _put_maximum_mass(scenario, exact / M_SUN, with_pairs, paired, ledger)
     ledger.put("maximum_mass_pn", leading / M_SUN, words.LEADING, source, other=second / M_SUN)
+
+
+@lru_cache(maxsize=64)
+def _largest(*arguments):
+    """Maximum mass [g] at leading order, with the second order, and in full relativity; kept while only the mass of the
+    star on show is changed."""
+    second = maximum_mass_leading(*arguments, second_order=True)
+    return maximum_mass_leading(*arguments), second, relativistic.maximum_mass(*arguments)
 
 
 def _put_maximum_mass(scenario, plain, with_pairs, paired, ledger):

@@ -12,6 +12,8 @@ fixed entropy turns. Slow rotation and a thin background enter by their effect o
 ApJ 102, 143; McLaughlin & Fuller 1996, ApJ 456, 71): <Gamma_1> + (2/3) T/|W| + 4.083 rho_b/rho_c.
 """
 
+from functools import lru_cache
+
 import numpy as np
 from scipy.special import wrightomega
 
@@ -219,10 +221,10 @@ def weight_for(rest_mass, temperature, rotation=0.0, background=0.0):
     stars of any weight are beyond their onset.
     """
     temperature, rotation, background = points.accept(temperature=temperature, rotation=rotation, background=background)
-    falls = np.asarray(_pull(HEAVIEST, temperature, background) > 0)
-    least, most = np.full(temperature.shape, np.inf), np.full(temperature.shape, np.inf)  # made of the two
-    for mass, mu in ((least, HEAVIEST), (most, LIGHTEST)):
-        mass[falls] = maximum_mass(mu, temperature[falls], rotation[falls], background[falls])
+    if temperature.ndim == 0:
+        least, most = _extremes(float(temperature), float(rotation), float(background))
+    else:
+        least, most = _extremes_of_many(temperature, rotation, background)
     rest_mass, temperature, rotation, background, least, most = np.broadcast_arrays(
         *points.accept(rest_mass=rest_mass), temperature, rotation, background, least, most
     )
@@ -231,6 +233,21 @@ def weight_for(rest_mass, temperature, rotation=0.0, background=0.0):
     if np.any(exists):
         weight[exists] = _weight_for(*(one[exists] for one in (rest_mass, temperature, rotation, background)))
     return weight
+
+
+@lru_cache(maxsize=64)
+def _extremes(temperature, rotation, background):
+    """``_extremes_of_many`` for one star; kept, because a moving slider asks for the same again and again."""
+    return _extremes_of_many(*(np.asarray(one) for one in (temperature, rotation, background)))
+
+
+def _extremes_of_many(temperature, rotation, background):
+    """Masses [g] that meet the onset at ``temperature`` when made of HEAVIEST and of LIGHTEST; infinite where none."""
+    falls = np.asarray(_pull(HEAVIEST, temperature, background) > 0)
+    least, most = np.full(temperature.shape, np.inf), np.full(temperature.shape, np.inf)
+    for mass, mu in ((least, HEAVIEST), (most, LIGHTEST)):
+        mass[falls] = maximum_mass(mu, temperature[falls], rotation[falls], background[falls])
+    return least, most
 
 
 def _weight_for(rest_mass, temperature, rotation, background):

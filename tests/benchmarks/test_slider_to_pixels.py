@@ -34,7 +34,7 @@ def percentile(values, share):
 def opened(page):
     """(page, server) with the dashboard at rest."""
     with started(DASHBOARD) as running:
-        page.set_viewport_size({"width": 1400, "height": 1000})
+        page.set_viewport_size({"width": 1366, "height": 768})
         page.goto(running.address)
         expect(page.locator(".massdash-charts[data-frame]")).to_be_visible(timeout=60_000)
         page.wait_for_timeout(1500)

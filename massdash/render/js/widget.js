@@ -57,7 +57,7 @@ class Page {
 
   /** Of one chart: as Python says, or such that two rows and what stands around them fill the window. */
   get height() {
-    const most = innerHeight < 1200 ? 300 : 560; // pixels take time: small machines come with small screens
+    const most = innerHeight < 1200 ? 260 : 560; // pixels take time: small machines come with small screens
     if (this.model.get("fill")) return Math.round(Math.max(240, Math.min(most, (innerHeight - 256) / 2)));
     return Math.max(120, Math.min(2000, this.model.get("height") || 300));
   }
