@@ -41,6 +41,8 @@ class Dashboard:
         self.warnings, self.others, self.table = ipywidgets.HTML(), ipywidgets.HTML(), ipywidgets.HTML()
         self.filing = Filing(offered, accept=self.show, outcome=lambda: self.outcome, chart=self.chart, say=self.say)
         self._later = Later(self._catch_up)
+        # the page lays its text out anew, which must not hold up the charts
+        self._verdict = Later(self._say_verdict, delay=0.03, patient=False)
         self._setting_label = False
         self.label.observe(self._relabelled, "value")
         for switch in (self.terms, self.approximate):
@@ -76,14 +78,18 @@ class Dashboard:
         self._redraw()
 
     def _redraw(self):
-        """What follows every step of a drag: the charts and the verdict."""
+        """What follows every step of a drag: the charts, and a moment later the verdict."""
         self.charts.show([self.chart(key) for key in CHARTS])
+        self._verdict.soon()
+
+    def _say_verdict(self):
         self.headline.value = reading.headline(self.outcome)
 
     def _catch_up(self):
         """What follows when a person pauses: bounds, exact maps, warnings and the table."""
         self.outcome = self._evaluate(self.scenario)
         self.charts.settle([self.chart(key) for key in CHARTS])
+        self._say_verdict()
         self.warnings.value = reading.warnings(self.outcome)
         self.others.value = reading.others(self.scenario, SHOWN)
         self.table.value = reading.table(self.outcome)

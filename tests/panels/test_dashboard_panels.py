@@ -246,6 +246,11 @@ def test_later_runs_once_after_a_pause():
         later.cancel()
         await asyncio.sleep(0.03)
         assert ran == [1]
+        hasty = Later(lambda: ran.append(2), delay=0.02, patient=False)
+        for _ in range(6):
+            hasty.soon()
+            await asyncio.sleep(0.01)
+        assert ran.count(2) >= 2
 
     asyncio.run(hurry())
     ran = []
